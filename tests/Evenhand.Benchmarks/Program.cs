@@ -1,0 +1,8 @@
+namespace Evenhand.Benchmarks;
+
+internal static class Program
+{
+    private static void Main()
+    {
+    }
+}
