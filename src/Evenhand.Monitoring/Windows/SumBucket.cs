@@ -1,0 +1,69 @@
+namespace Evenhand.Monitoring.Windows;
+
+/// <summary>The sums of one stretch of event time, unpacked while records come in and packed while none do.</summary>
+internal sealed class SumBucket(BucketKey key)
+{
+    private long[]? _values;
+    private byte[]? _packed;
+
+    /// <summary>Which bucket it is.</summary>
+    public BucketKey Key { get; } = key;
+
+    /// <summary>Whether it changed since it was last stored.</summary>
+    public bool IsDirty { get; set; }
+
+    /// <summary>When it was last added to, in records.</summary>
+    public long LastUse { get; set; }
+
+    /// <summary>Whether its sums are unpacked.</summary>
+    public bool IsOpen => _values is not null;
+
+    /// <summary>A bucket as stored.</summary>
+    public static SumBucket Stored(BucketKey key, byte[] packed) => new(key) { _packed = packed };
+
+    /// <summary>The sums to add to.</summary>
+    public long[] Open(int length)
+    {
+        if (_values is null)
+        {
+            _values = new long[length];
+            if (_packed is not null)
+            {
+                BucketCodec.AddTo(_packed, _values);
+            }
+        }
+
+        _packed = null;
+        return _values;
+    }
+
+    /// <summary>The stored form; the bucket stays as it is.</summary>
+    public byte[] Pack() => _packed ?? BucketCodec.Pack(_values);
+
+    /// <summary>Packs the sums to save memory.</summary>
+    public void Close()
+    {
+        _packed = Pack();
+        _values = null;
+    }
+
+    /// <summary>Adds the sums to others.</summary>
+    public void AddTo(Span<long> into)
+    {
+        if (_values is null)
+        {
+            if (_packed is not null)
+            {
+                BucketCodec.AddTo(_packed, into);
+            }
+
+            return;
+        }
+
+        ReadOnlySpan<long> values = _values;
+        for (int i = 0; i < values.Length; i++)
+        {
+            into[i] += values[i];
+        }
+    }
+}
