@@ -69,6 +69,26 @@ public sealed class WindowSpan
         return new WindowSpan(window.Text, start, asOf, today, Math.Max(today, quartersEnd));
     }
 
+    /// <summary>The stretch just before a window: whole local days, and what is left of the day in which the window starts.</summary>
+    /// <param name="window">The window.</param>
+    /// <param name="length">How far to go back.</param>
+    /// <param name="days">The days of the charter's time zone.</param>
+    public static WindowSpan Before(WindowSpan window, CharterDuration length, LocalDays days)
+    {
+        ArgumentNullException.ThrowIfNull(window);
+        ArgumentNullException.ThrowIfNull(days);
+        return Between("baseline", window.From - length.Microseconds, window.From, days);
+    }
+
+    /// <summary>A stretch between two instants; the start is rounded down to a local day.</summary>
+    public static WindowSpan Between(string name, long from, long to, LocalDays days)
+    {
+        ArgumentNullException.ThrowIfNull(days);
+        long start = days.DayOf(from).Start;
+        long lastDay = days.DayOf(to).Start;
+        return new WindowSpan(name, start, to, lastDay, Math.Max(lastDay, EventTime.Floor(to, EventTime.QuarterHour)));
+    }
+
     /// <summary>Whether a bucket is one of those that make up the window.</summary>
     /// <param name="tier">The bucket's tier.</param>
     /// <param name="start">The bucket's start.</param>
