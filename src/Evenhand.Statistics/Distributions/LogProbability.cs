@@ -17,18 +17,18 @@ internal static class LogProbability
 
         if (x == 0)
         {
-            return n * (p < 0.5 ? double.LogP1(-p) : Math.Log(q));
+            return n * (p < 0.5 ? NearOne.LogOnePlus(-p) : Math.Log(q));
         }
 
         if (x == n)
         {
-            return n * (q < 0.5 ? double.LogP1(-q) : Math.Log(p));
+            return n * (q < 0.5 ? NearOne.LogOnePlus(-q) : Math.Log(p));
         }
 
         double failures = n - x;
         double correction = Stirling.Error(n) - Stirling.Error(x) - Stirling.Error(n - x);
         double deviance = Stirling.Deviance(x, n * p) + Stirling.Deviance(failures, n * q);
-        return correction - deviance - (0.5 * (Math.Log(2 * Math.PI) + Math.Log(x) + double.LogP1(-(double)x / n)));
+        return correction - deviance - (0.5 * (Math.Log(2 * Math.PI) + Math.Log(x) + NearOne.LogOnePlus(-(double)x / n)));
     }
 
     /// <summary>

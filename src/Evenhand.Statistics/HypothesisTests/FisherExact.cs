@@ -1,3 +1,5 @@
+using Evenhand.Statistics.Distributions;
+
 namespace Evenhand.Statistics.HypothesisTests;
 
 /// <summary>
@@ -30,7 +32,7 @@ public static class FisherExact
         ArgumentChecks.Count(c);
         ArgumentChecks.Count(d);
         var tables = new Hypergeometric(a + b, c + d, a + c);
-        double limit = tables.Log(a) + double.LogP1(TieTolerance);
+        double limit = tables.Log(a) + NearOne.LogOnePlus(TieTolerance);
         long mode = tables.Mode;
         if (tables.Log(mode) <= limit)
         {
