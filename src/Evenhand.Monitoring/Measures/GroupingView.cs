@@ -61,6 +61,7 @@ public sealed class GroupingView
         Grouping = Shape.Name,
         Group = Shape.Name is null ? null : group.Label,
         Cell = group.Cell,
+        CellIndex = group.Index,
         Field = field,
     };
 
@@ -84,7 +85,9 @@ public sealed class GroupingView
         Grouping = Shape.Name,
         Group = group.Label,
         Cell = group.Cell,
+        CellIndex = group.Index,
         Reference = Reference!.Label,
+        ReferenceIndex = Reference.Index,
     };
 
     /// <summary>A difference of rates with Newcombe's hybrid score interval.</summary>

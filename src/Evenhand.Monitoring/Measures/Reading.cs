@@ -79,6 +79,12 @@ public sealed class Reading
     /// <summary>Smallest denominator on either side of a comparison; the publication rule looks at it.</summary>
     internal long SmallestCount { get; set; } = long.MaxValue;
 
+    /// <summary>The cell in the grouping's shape.</summary>
+    internal int CellIndex { get; init; } = -1;
+
+    /// <summary>The cell compared with; −1 where nothing is compared.</summary>
+    internal int ReferenceIndex { get; init; } = -1;
+
     /// <summary>Adds a note to those there are.</summary>
     public void AddNote(string note) => Note = Note is null ? note : $"{Note}; {note}";
 
