@@ -20,13 +20,20 @@ public sealed class RecordBatch
     /// <summary>Score units per range: a score s is kept as round((s − low)/(high − low) · 2⁴⁰).</summary>
     public const long ScoreUnit = 1L << 40;
 
+    // Texts are copied; without a bound a batch of long ones could outgrow an array.
+    private const int MaximumTextBytes = 16 << 20;
+
     private readonly int[] _sliceStarts;
+    private readonly int[] _rejectedStarts;
+    private readonly bool _keepsRejected;
     private byte[] _sliceBytes;
+    private byte[] _rejectedBytes = [];
 
     /// <summary>Makes room for a number of entries.</summary>
     /// <param name="layout">The charter's layout.</param>
     /// <param name="capacity">At least 1.</param>
-    public RecordBatch(RecordLayout layout, int capacity)
+    /// <param name="keepRejected">Whether the bytes of rejected records are kept, for the rejected store.</param>
+    public RecordBatch(RecordLayout layout, int capacity, bool keepRejected = false)
     {
         ArgumentNullException.ThrowIfNull(layout);
         ArgumentOutOfRangeException.ThrowIfLessThan(capacity, 1);
@@ -43,6 +50,8 @@ public sealed class RecordBatch
         Codes = new ushort[capacity * FieldCount];
         _sliceStarts = new int[(capacity * SliceCount) + 1];
         _sliceBytes = new byte[256];
+        _keepsRejected = keepRejected;
+        _rejectedStarts = new int[capacity + 1];
     }
 
     /// <summary>Most entries.</summary>
@@ -57,8 +66,9 @@ public sealed class RecordBatch
     /// <summary>Slice fields of a record.</summary>
     public int SliceCount { get; }
 
-    /// <summary>Whether there is no room for another entry.</summary>
-    public bool IsFull => Count == Capacity;
+    /// <summary>Whether no further entry should be put in: all places are taken, or what is kept of texts has grown past 16 MiB.</summary>
+    public bool IsFull => Count == Capacity
+        || (Count > 0 && (_sliceStarts[Count * SliceCount] > MaximumTextBytes || _rejectedStarts[Count] > MaximumTextBytes));
 
     /// <summary>Event time in microseconds since 1970-01-01T00:00:00Z.</summary>
     public long[] Times { get; }
@@ -100,9 +110,25 @@ public sealed class RecordBatch
         Count = 0;
     }
 
+    /// <summary>The bytes of a rejected record; empty where they are not kept, or were never held (a record too long).</summary>
+    public ReadOnlySpan<byte> RejectedBytesOf(int entry) =>
+        _rejectedBytes.AsSpan(_rejectedStarts[entry], _rejectedStarts[entry + 1] - _rejectedStarts[entry]);
+
     /// <summary>Ends an entry as a rejection.</summary>
-    public void Reject(RejectReason reason, long position)
+    /// <param name="reason">Why.</param>
+    /// <param name="position">The record's position in its source.</param>
+    /// <param name="bytes">The record's bytes, or none.</param>
+    public void Reject(RejectReason reason, long position, ReadOnlySpan<byte> bytes = default)
     {
+        int start = Count == 0 ? 0 : _rejectedStarts[Count];
+        int end = start + (_keepsRejected ? bytes.Length : 0);
+        if (end > _rejectedBytes.Length)
+        {
+            Array.Resize(ref _rejectedBytes, Math.Max(end, _rejectedBytes.Length * 2));
+        }
+
+        bytes[..(end - start)].CopyTo(_rejectedBytes.AsSpan(start));
+        _rejectedStarts[Count + 1] = end;
         for (int slice = 0; slice < SliceCount; slice++)
         {
             SetSlice(slice, default);
@@ -116,6 +142,7 @@ public sealed class RecordBatch
     /// <summary>Ends an entry as a record; its columns and slice values (all, in order) have been set at index <see cref="Count"/>.</summary>
     public void Accept(long position)
     {
+        _rejectedStarts[Count + 1] = Count == 0 ? 0 : _rejectedStarts[Count];
         Rejected[Count] = RejectReason.None;
         Positions[Count] = position;
         Count++;
