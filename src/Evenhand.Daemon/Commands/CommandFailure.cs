@@ -1,0 +1,10 @@
+namespace Evenhand.Daemon.Commands;
+
+/// <summary>Ends a command with an exit status and one line that a person can act on.</summary>
+/// <param name="exitCode">1: found something wrong; 2: bad usage or bad input; 3: the environment failed.</param>
+/// <param name="message">What is wrong and how to mend it.</param>
+internal sealed class CommandFailure(int exitCode, string message) : Exception(message)
+{
+    /// <summary>The exit status.</summary>
+    public int ExitCode { get; } = exitCode;
+}
