@@ -190,7 +190,8 @@ public sealed class Shard
         {
             _counts.Rejected++;
             _counts.ByReason[(int)batch.Rejected[i]]++;
-            _refused.Add(new RefusedEntry(input, batch.Positions[i], batch.Rejected[i].Name()));
+            byte[]? bytes = _layout.Charter.KeepRejected ? batch.RejectedBytesOf(i).ToArray() : null;
+            _refused.Add(new RefusedEntry(input, batch.Positions[i], batch.Rejected[i].Name(), bytes));
             return;
         }
 
