@@ -10,7 +10,7 @@ internal sealed class Terminal
     public TextWriter Error { get; } = Console.Error;
 
     /// <summary>Whether progress may be drawn: only on a terminal.</summary>
-    public bool ShowsProgress => !Console.IsErrorRedirected;
+    public bool ShowsProgress { get; } = !Console.IsErrorRedirected;
 
     /// <summary>Opens the results as bytes.</summary>
     public Stream OpenOut()
