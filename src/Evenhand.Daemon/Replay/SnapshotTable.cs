@@ -12,6 +12,8 @@ internal static class SnapshotTable
     private const string Caution =
         "A gap is a signal to investigate, not proof of unlawful discrimination; its absence is no clearance. Local law and licensed professionals decide.";
 
+    private static readonly string[] AlertKeys = ["measure", "window", "grouping", "group", "field"];
+
     /// <summary>Writes the tables.</summary>
     public static void Write(JsonObject snapshot, TextWriter to)
     {
@@ -131,7 +133,7 @@ internal static class SnapshotTable
         console.WriteLine(alerts.Count == 0 ? "No alert is open." : $"{alerts.Count} open {(alerts.Count == 1 ? "alert" : "alerts")}:");
         foreach (JsonNode? alert in alerts)
         {
-            string what = string.Join(' ', new[] { "measure", "window", "grouping", "group", "field" }.Select(k => (string?)alert![k]).Where(t => t is not null));
+            string what = string.Join(' ', AlertKeys.Select(k => (string?)alert![k]).Where(t => t is not null));
             string limit = alert!["below"] is { } below ? $", limit {below}" : alert["above"] is { } above ? $", limit {above}" : "";
             string value = alert["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";

@@ -46,7 +46,8 @@ internal sealed class SnapshotMembers
         get => _values.TryGetValue(name, out var value) ? value : null;
         set
         {
-            if (value is { } bytes)
+            // A null array converts to empty memory, not to null; no JSON value is empty.
+            if (value is { IsEmpty: false } bytes)
             {
                 _values[name] = bytes;
             }
