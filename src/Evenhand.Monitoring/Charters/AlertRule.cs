@@ -1,18 +1,5 @@
 namespace Evenhand.Monitoring.Charters;
 
-/// <summary>What an alert asks of the person it reaches.</summary>
-public enum AlertSeverity
-{
-    /// <summary>To be worked on in hours.</summary>
-    Ticket = 0,
-
-    /// <summary>To be worked on now.</summary>
-    Page = 1,
-
-    /// <summary>To be known.</summary>
-    Info = 2,
-}
-
 /// <summary>A rule of the charter under <c>alerts</c>: a limit on a measure, a shift against the baseline, or silence.</summary>
 public sealed record AlertRule
 {

@@ -1,15 +1,5 @@
 namespace Evenhand.Monitoring.Charters;
 
-/// <summary>The notation of a rule file.</summary>
-public enum RuleFormat
-{
-    /// <summary>Predictive Model Markup Language.</summary>
-    Pmml = 0,
-
-    /// <summary>Open Neural Network Exchange, machine-learning operators.</summary>
-    Onnx = 1,
-}
-
 /// <summary>The deciding model, where it is known.</summary>
 /// <param name="Format">The file's notation.</param>
 /// <param name="File">File name relative to the charter.</param>

@@ -1,15 +1,5 @@
 namespace Evenhand.Monitoring.Charters;
 
-/// <summary>When an outcome can be seen at all.</summary>
-public enum OutcomeObservation
-{
-    /// <summary>Whatever the decision was.</summary>
-    Any = 0,
-
-    /// <summary>Only after a favourable decision, so that rates conditional on the outcome are bounds.</summary>
-    Favourable = 1,
-}
-
 /// <summary>What became of the case later.</summary>
 /// <param name="At">The place.</param>
 /// <param name="Positive">Texts of a positive outcome; at least one.</param>

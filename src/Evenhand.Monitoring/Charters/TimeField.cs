@@ -1,21 +1,5 @@
 namespace Evenhand.Monitoring.Charters;
 
-/// <summary>How event time is written.</summary>
-public enum TimeUnit
-{
-    /// <summary>A string by RFC 3339.</summary>
-    Rfc3339 = 0,
-
-    /// <summary>Seconds since 1970-01-01T00:00:00Z, fractions allowed.</summary>
-    Seconds = 1,
-
-    /// <summary>Milliseconds since the same.</summary>
-    Milliseconds = 2,
-
-    /// <summary>Microseconds since the same.</summary>
-    Microseconds = 3,
-}
-
 /// <summary>Where event time stands and how it is written.</summary>
 /// <param name="At">The place.</param>
 /// <param name="Unit">The notation.</param>

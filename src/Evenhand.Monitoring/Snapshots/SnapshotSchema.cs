@@ -8,7 +8,7 @@ public static class SnapshotSchema
 
     private static string Read()
     {
-        using var stream = typeof(SnapshotSchema).Assembly.GetManifestResourceStream(typeof(SnapshotSchema), "snapshot.schema.json")
+        using var stream = typeof(SnapshotSchema).Assembly.GetManifestResourceStream("snapshot.schema.json")
             ?? throw new InvalidOperationException("The program was built without its snapshot schema.");
         using var reader = new StreamReader(stream);
         return reader.ReadToEnd();
