@@ -1,4 +1,3 @@
-using System.Reflection;
 using ArchUnitNET.Domain;
 using ArchUnitNET.Loader;
 
@@ -7,12 +6,12 @@ namespace Evenhand.Architecture.Tests;
 /// <summary>Who depends on whom, read from the compiled code.</summary>
 internal static class Arrows
 {
-    public static readonly Assembly[] Projects =
+    public static readonly System.Reflection.Assembly[] Projects =
     [
-        Assembly.Load("Evenhand.Circuits"),
-        Assembly.Load("Evenhand.Statistics"),
-        Assembly.Load("Evenhand.Monitoring"),
-        Assembly.Load("evenhand"),
+        System.Reflection.Assembly.Load("Evenhand.Circuits"),
+        System.Reflection.Assembly.Load("Evenhand.Statistics"),
+        System.Reflection.Assembly.Load("Evenhand.Monitoring"),
+        System.Reflection.Assembly.Load("evenhand"),
     ];
 
     private static readonly ArchUnitNET.Domain.Architecture Code = new ArchLoader().LoadAssemblies(Projects).Build();
