@@ -3,7 +3,8 @@ using Evenhand.Monitoring.Charters.Yaml;
 
 namespace Evenhand.Monitoring.Charters;
 
-/// <summary>Checks intersections, and that what has many groups names a reference.</summary>
+/// <summary>Checks intersections, and that a field of many groups names a reference.</summary>
+/// <remarks>Crossed groups may be many: without named references they are compared with the one of the highest rate.</remarks>
 internal static class GroupingValidator
 {
     private const string ReferenceMend = "name a reference, since beyond 12 groups pairs are compared with one only";
@@ -77,20 +78,11 @@ internal static class GroupingValidator
 
         // At most four factors of about a thousand each: no overflow.
         long codes = groups.Aggregate(1L, (n, g) => n * g.Value.CodeCount);
-        long cells = groups.Aggregate(1L, (n, g) => n * g.Value.ListedCount);
         if (codes > CharterLimits.JointCodes)
         {
             at.Report(
                 string.Create(CultureInfo.InvariantCulture, $"makes {codes:N0} joint codes"),
                 string.Create(CultureInfo.InvariantCulture, $"cross fewer groups or list fewer values; at most {CharterLimits.JointCodes:N0}"));
-        }
-
-        List<string> without = [.. groups.Where(g => g.Value.Reference is null && !IsLarge(g.Value)).Select(g => g.Value.Name)];
-        if (cells > CharterLimits.ComparedWithoutReference && without.Count > 0)
-        {
-            at.Report(
-                string.Create(CultureInfo.InvariantCulture, $"makes {cells:N0} groups without a reference in {string.Join(" and ", without)}"),
-                ReferenceMend);
         }
     }
 }
