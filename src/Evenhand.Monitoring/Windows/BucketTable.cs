@@ -6,7 +6,7 @@ namespace Evenhand.Monitoring.Windows;
 /// <remarks>Which buckets exist depends on the records alone, not on when they are packed, stored or pruned. Not thread-safe.</remarks>
 internal sealed class BucketTable(int length, Retention retention)
 {
-    private const int OpenBytes = 16 << 20;
+    private const int OpenBytes = 4 << 20;
     private const int TierCount = 4;
 
     private readonly Dictionary<BucketKey, SumBucket> _buckets = [];
@@ -14,6 +14,9 @@ internal sealed class BucketTable(int length, Retention retention)
 
     // Neighbouring records mostly fall into the same buckets: the last one of each tier and slice is found without hashing.
     private SumBucket?[] _last = new SumBucket?[TierCount];
+
+    // Arrays of closed buckets, cleared, to be used again.
+    private readonly Stack<long[]> _spare = [];
     private int _open;
     private long _uses;
 
@@ -28,7 +31,7 @@ internal sealed class BucketTable(int length, Retention retention)
         {
             last.IsDirty = true;
             last.LastUse = ++_uses;
-            return last.Open(length);
+            return last.Values;
         }
 
         if (place >= _last.Length)
@@ -38,7 +41,7 @@ internal sealed class BucketTable(int length, Retention retention)
 
         SumBucket bucket = Find(key);
         _last[place] = bucket;
-        return bucket.Open(length);
+        return bucket.Values;
     }
 
     private SumBucket Find(BucketKey key)
@@ -55,7 +58,7 @@ internal sealed class BucketTable(int length, Retention retention)
                 CloseOldest();
             }
 
-            found.Open(length);
+            found.Open(_spare.Count > 0 ? _spare.Pop() : new long[length]);
             _open++;
         }
 
@@ -74,7 +77,12 @@ internal sealed class BucketTable(int length, Retention retention)
             if (key.Tier != Tier.All && key.Start < retention.Earliest(key.Tier, newest))
             {
                 dropped.Add(key);
-                _open -= bucket.IsOpen ? 1 : 0;
+                if (bucket.IsOpen)
+                {
+                    Spare(bucket.Values);
+                    _open--;
+                }
+
                 _buckets.Remove(key);
             }
         }
@@ -103,12 +111,18 @@ internal sealed class BucketTable(int length, Retention retention)
         return dirty;
     }
 
+    private void Spare(long[] values)
+    {
+        Array.Clear(values);
+        _spare.Push(values);
+    }
+
     private void CloseOldest()
     {
         List<SumBucket> open = [.. _buckets.Values.Where(b => b.IsOpen).OrderBy(b => b.LastUse)];
         foreach (SumBucket bucket in open.Take((open.Count / 2) + 1))
         {
-            bucket.Close();
+            Spare(bucket.Close());
             _open--;
         }
     }

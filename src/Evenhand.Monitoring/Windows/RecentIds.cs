@@ -8,7 +8,7 @@ namespace Evenhand.Monitoring.Windows;
 /// <para>A record is a duplicate when its id is remembered with an event time less than the charter's <c>deduplicate</c> away, in
 /// either direction: so the verdict does not depend on whether a file is in order. The newest <see cref="Capacity"/> ids are
 /// remembered; what is forgotten is counted.</para>
-/// <para>A ring in order of arrival with chained buckets: 28 bytes an id. A hash of 96 bits makes a false duplicate among a
+/// <para>A ring in order of arrival with chained buckets: 24 bytes an id, and 4 MiB for the heads of the chains. A hash of 96 bits makes a false duplicate among a
 /// million ids less likely than 10⁻¹⁷. Not thread-safe.</para>
 /// </remarks>
 internal sealed class RecentIds
@@ -20,10 +20,14 @@ internal sealed class RecentIds
     public const int EntryBytes = 20;
 
     private const int HeadCount = 1 << 20;
+    private const int ChunkLength = 1 << 14;
+    private const int Unused = -2;
 
     private readonly long _within;
     private readonly int[] _heads = new int[HeadCount];
-    private Entry[] _ring = new Entry[1024];
+
+    // The ring in pieces, made as they are reached: growing one array would leave its halves behind as garbage.
+    private readonly Entry[]?[] _ring = new Entry[Capacity / ChunkLength][];
     private long _added;
     private long _stored;
 
@@ -46,9 +50,9 @@ internal sealed class RecentIds
     {
         int head = HeadOf(id);
         uint check = unchecked((uint)id.Low);
-        for (int at = _heads[head]; at >= 0; at = _ring[at].Next)
+        for (int at = _heads[head]; at >= 0; at = At(at).Next)
         {
-            ref Entry entry = ref _ring[at];
+            ref Entry entry = ref At(at);
             if (entry.High == id.High && entry.Check == check && Math.Abs(entry.Time - time) < _within)
             {
                 return false;
@@ -67,7 +71,7 @@ internal sealed class RecentIds
         Span<byte> rest = bytes;
         for (long i = from; i < _added; i++, rest = rest[EntryBytes..])
         {
-            ref Entry entry = ref _ring[(int)(i % Capacity)];
+            ref Entry entry = ref At((int)(i % Capacity));
             BinaryPrimitives.WriteUInt64LittleEndian(rest, entry.High);
             BinaryPrimitives.WriteUInt32LittleEndian(rest[8..], entry.Check);
             BinaryPrimitives.WriteInt64LittleEndian(rest[12..], entry.Time);
@@ -101,46 +105,46 @@ internal sealed class RecentIds
 
     private static int HeadOf(IdHash id) => unchecked((int)(id.High & (HeadCount - 1)));
 
+    private ref Entry At(int slot) => ref _ring[slot / ChunkLength]![slot % ChunkLength];
+
     private void Insert(ulong high, uint check, long time, int head)
     {
         int slot = (int)(_added % Capacity);
-        if (slot >= _ring.Length)
+        if (_ring[slot / ChunkLength] is null)
         {
-            int size = _ring.Length;
-            while (size <= slot)
-            {
-                size *= 2;
-            }
-
-            Array.Resize(ref _ring, size);
+            Entry[] chunk = new Entry[ChunkLength];
+            Array.Fill(chunk, new Entry { Next = Unused });
+            _ring[slot / ChunkLength] = chunk;
         }
 
-        if (_ring[slot].IsUsed)
+        ref Entry entry = ref At(slot);
+        if (entry.Next != Unused)
         {
             Forget(slot);
         }
 
-        _ring[slot] = new Entry { High = high, Check = check, Time = time, Next = _heads[head], IsUsed = true };
+        entry = new Entry { High = high, Check = check, Time = time, Next = _heads[head] };
         _heads[head] = slot;
         _added++;
     }
 
     private void Forget(int slot)
     {
-        int head = unchecked((int)(_ring[slot].High & (HeadCount - 1)));
+        int next = At(slot).Next;
+        int head = unchecked((int)(At(slot).High & (HeadCount - 1)));
         if (_heads[head] == slot)
         {
-            _heads[head] = _ring[slot].Next;
+            _heads[head] = next;
             return;
         }
 
         int at = _heads[head];
-        while (_ring[at].Next != slot)
+        while (At(at).Next != slot)
         {
-            at = _ring[at].Next;
+            at = At(at).Next;
         }
 
-        _ring[at].Next = _ring[slot].Next;
+        At(at).Next = next;
     }
 
     private struct Entry
@@ -149,6 +153,5 @@ internal sealed class RecentIds
         public long Time;
         public uint Check;
         public int Next;
-        public bool IsUsed;
     }
 }

@@ -21,12 +21,15 @@ internal sealed class SumBucket(BucketKey key)
     /// <summary>A bucket as stored.</summary>
     public static SumBucket Stored(BucketKey key, byte[] packed) => new(key) { _packed = packed };
 
-    /// <summary>The sums to add to.</summary>
-    public long[] Open(int length)
+    /// <summary>The sums to add to, if the bucket is open.</summary>
+    public long[] Values => _values!;
+
+    /// <summary>Unpacks the sums into an array of zeros.</summary>
+    public void Open(long[] zeros)
     {
         if (_values is null)
         {
-            _values = new long[length];
+            _values = zeros;
             if (_packed is not null)
             {
                 BucketCodec.AddTo(_packed, _values);
@@ -34,17 +37,18 @@ internal sealed class SumBucket(BucketKey key)
         }
 
         _packed = null;
-        return _values;
     }
 
     /// <summary>The stored form; the bucket stays as it is.</summary>
     public byte[] Pack() => _packed ?? BucketCodec.Pack(_values);
 
-    /// <summary>Packs the sums to save memory.</summary>
-    public void Close()
+    /// <summary>Packs the sums to save memory and gives their array back.</summary>
+    public long[] Close()
     {
         _packed = Pack();
+        long[] values = _values!;
         _values = null;
+        return values;
     }
 
     /// <summary>Adds the sums to others.</summary>
