@@ -6,5 +6,22 @@ namespace Evenhand.Daemon.Commands;
 internal static class StoreOption
 {
     /// <summary>Opens a store for writing.</summary>
-    public static IStore Open(string url) => throw new CommandFailure(2, url);
+    /// <exception cref="CommandFailure">Not the URL of a store that this version knows.</exception>
+    public static IStore Open(string url) => Parse(url).Open();
+
+    /// <summary>Opens a store for reading.</summary>
+    /// <exception cref="CommandFailure">Not the URL of a store that this version knows.</exception>
+    public static IEvidenceStore OpenReadOnly(string url) => Parse(url).OpenReadOnly();
+
+    private static StoreUrl Parse(string url)
+    {
+        try
+        {
+            return StoreUrl.Parse(url);
+        }
+        catch (FormatException e)
+        {
+            throw new CommandFailure(2, e.Message);
+        }
+    }
 }

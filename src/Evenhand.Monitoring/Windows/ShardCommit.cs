@@ -17,4 +17,8 @@ public sealed record ShardCommit(
     byte[] NewIds,
     long ForgottenIds,
     IReadOnlyList<RefusedEntry> Refused,
-    byte[]? FoundOutcomes);
+    byte[]? FoundOutcomes)
+{
+    /// <summary>Bytes of one id in <see cref="NewIds"/>.</summary>
+    public const int IdBytes = RecentIds.EntryBytes;
+}
