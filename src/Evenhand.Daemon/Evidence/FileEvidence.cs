@@ -1,0 +1,74 @@
+using System.Text.Json;
+using System.Text.Json.Nodes;
+using Evenhand.Daemon.Commands;
+
+namespace Evenhand.Daemon.Evidence;
+
+/// <summary>The chain in an exported file, one document a line.</summary>
+internal sealed class FileEvidence : IEvidenceSource
+{
+    private readonly byte[] _bytes;
+
+    private FileEvidence(string name, byte[] bytes)
+    {
+        Name = name;
+        _bytes = bytes;
+    }
+
+    /// <inheritdoc/>
+    public string Name { get; }
+
+    /// <summary>Reads an exported file.</summary>
+    /// <exception cref="CommandFailure">It cannot be read.</exception>
+    public static FileEvidence Open(string path)
+    {
+        try
+        {
+            return new FileEvidence(path, File.ReadAllBytes(path));
+        }
+        catch (Exception e) when (e is FileNotFoundException or DirectoryNotFoundException)
+        {
+            throw new CommandFailure(2, $"{path}: no such file; check the name");
+        }
+        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
+        {
+            throw new CommandFailure(2, $"{path}: cannot be read ({e.Message}); check that it is a file and its permissions");
+        }
+    }
+
+    /// <inheritdoc/>
+    public IEnumerable<byte[]> Documents()
+    {
+        int start = 0;
+        while (start < _bytes.Length)
+        {
+            int end = Array.IndexOf(_bytes, (byte)'\n', start);
+            end = end < 0 ? _bytes.Length : end;
+            yield return _bytes[start..end];
+            start = end + 1;
+        }
+    }
+
+    /// <inheritdoc/>
+    public byte[]? Document(long sequence) => Documents().FirstOrDefault(d => SequenceOf(d) == sequence);
+
+    /// <inheritdoc/>
+    public IEnumerable<string> OtherFaults() => [];
+
+    /// <inheritdoc/>
+    public void Dispose()
+    {
+    }
+
+    private static long? SequenceOf(byte[] document)
+    {
+        try
+        {
+            return (long?)JsonNode.Parse(document)?["sequence"];
+        }
+        catch (Exception e) when (e is JsonException or InvalidOperationException or FormatException)
+        {
+            return null;
+        }
+    }
+}
