@@ -140,7 +140,7 @@ internal sealed class EvidenceCommand
 
         ChainReport report = verifier.Complete();
         bool isEmptyStore = source is StoreEvidence && report.LastSequence is null && report.Faults.All(f => f.Kind == ChainFaultKind.Empty) && parsed.GetValue(_head) is null;
-        string[] faults = [.. isEmptyStore ? [] : report.Faults.Select(Sentence), .. source.OtherFaults()];
+        string[] faults = [.. isEmptyStore ? [] : report.Faults.Select(f => f.Message), .. source.OtherFaults()];
         if (parsed.GetValue(_json))
         {
             _terminal.Out.WriteLine(new JsonObject
@@ -160,15 +160,11 @@ internal sealed class EvidenceCommand
 
             _terminal.Out.WriteLine(faults.Length > 0 ? $"{source.Name}: the chain is broken"
                 : isEmptyStore ? $"{source.Name}: the chain is empty"
-                : $"{source.Name}: {report.Verified:N0} snapshots verified, head {report.Head}");
+                : $"{source.Name}: {report.Verified:N0} {(report.Verified == 1 ? "snapshot" : "snapshots")} verified, head {report.Head}");
         }
 
         return faults.Length == 0 ? 0 : 1;
     }
-
-    private static string Sentence(ChainFault fault) => fault.Sequence is { } sequence
-        ? $"sequence {sequence} (line {fault.Line}): {fault.Message}"
-        : fault.Line > 0 ? $"line {fault.Line}: {fault.Message}" : fault.Message;
 
     private static ChainVerifier Verifier(string? head, ECDsa? key)
     {

@@ -27,6 +27,7 @@ internal sealed class ReplayCommand
     private readonly Option<string?> _outcomes = new("--outcomes") { HelpName = "FILE", Description = "Outcomes apart from their decisions, joined by id." };
     private readonly Option<string?> _signingKey = new("--signing-key") { HelpName = "FILE", Description = "Sign the snapshot with this ECDSA P-256 key (PEM)." };
     private readonly Option<int> _batchSize = new("--batch-size") { HelpName = "N", Description = "Records handled at a time; changes no result.", DefaultValueFactory = _ => 4096 };
+    private readonly Option<int> _commitEvery = new("--commit-every") { HelpName = "N", Description = "With --store: records between two commits, at most; changes no result.", DefaultValueFactory = _ => 65536 };
     private readonly Option<bool> _failOnAlert = new("--fail-on-alert") { Description = "Exit with status 1 when an alert is open." };
     private readonly Option<bool> _json = new("--json") { Description = "Print the snapshot document instead of tables." };
     private readonly Terminal _terminal;
@@ -45,7 +46,7 @@ internal sealed class ReplayCommand
         Command command = new("replay", "Runs the whole pipeline over files in event time and states what it found.");
         command.Arguments.Add(replay._charter);
         command.Arguments.Add(replay._inputs);
-        foreach (Option option in (Option[])[replay._out, replay._asOf, replay._store, replay._outcomes, replay._signingKey, replay._batchSize, replay._failOnAlert, replay._json])
+        foreach (Option option in (Option[])[replay._out, replay._asOf, replay._store, replay._outcomes, replay._signingKey, replay._batchSize, replay._commitEvery, replay._failOnAlert, replay._json])
         {
             command.Options.Add(option);
         }
@@ -67,6 +68,7 @@ internal sealed class ReplayCommand
             Outcomes = parsed.GetValue(_outcomes),
             SigningKey = key,
             BatchSize = Math.Clamp(parsed.GetValue(_batchSize), 1, 1 << 20),
+            CommitEvery = Math.Clamp(parsed.GetValue(_commitEvery), 1, 1 << 20),
         };
         Check(charter, request);
         ReplayResult result = Replay(charter, request);

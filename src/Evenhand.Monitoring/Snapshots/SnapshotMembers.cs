@@ -43,7 +43,8 @@ internal sealed class SnapshotMembers
     /// <summary>A member's value as canonical bytes; setting replaces, null takes away.</summary>
     public ReadOnlyMemory<byte>? this[string name]
     {
-        get => _values.TryGetValue(name, out var value) ? value : null;
+        // The cast matters: a bare null would turn into empty memory, which is not null.
+        get => _values.TryGetValue(name, out var value) ? value : (ReadOnlyMemory<byte>?)null;
         set
         {
             // A null array converts to empty memory, not to null; no JSON value is empty.
