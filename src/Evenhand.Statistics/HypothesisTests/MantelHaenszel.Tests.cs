@@ -64,6 +64,10 @@ public static partial class MantelHaenszel
             return ChiSquareResult.Of(double.NaN, 0);
         }
 
+        // Turned so that the odds ratio is at most 1 and the first cell the smaller of its diagonal: the small fitted
+        // counts then come out directly and not as differences of large ones. No statistic depends on the turn.
+        bool exchange = ratio > 1;
+        double atMostOne = exchange ? 1 / ratio : ratio;
         int informative = 0;
         double statistic = 0, excess = 0, variance = 0;
         for (int i = 0; i < count; i++)
@@ -74,8 +78,10 @@ public static partial class MantelHaenszel
                 continue;
             }
 
-            double fitted = s.FittedEvents(ratio);
-            double cells = (1 / fitted) + (1 / (s.First - fitted)) + (1 / (s.Events - fitted)) + (1 / (s.Second - s.Events + fitted));
+            s = exchange ? s.Exchanged : s;
+            s = s.A > s.D ? s.Turned : s;
+            double fitted = s.FittedEvents(atMostOne);
+            double cells = (1 / fitted) + (1 / (s.First - fitted)) + (1 / (s.Events - fitted)) + (1 / (s.D - s.A + fitted));
             informative++;
             statistic += (s.A - fitted) * (s.A - fitted) * cells;
             excess += s.A - fitted;

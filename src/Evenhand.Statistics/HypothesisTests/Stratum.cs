@@ -1,3 +1,5 @@
+using System.Diagnostics;
+
 namespace Evenhand.Statistics.HypothesisTests;
 
 /// <summary>One two-by-two table of a stratified analysis, as doubles.</summary>
@@ -28,6 +30,12 @@ internal readonly record struct Stratum(double A, double B, double C, double D)
     /// <summary>True when every margin has members, so that the odds ratio of the stratum can vary.</summary>
     public bool IsInformative => First > 0 && Second > 0 && Events > 0 && NonEvents > 0;
 
+    /// <summary>The table with events and non-events exchanged; its odds ratio is the inverse.</summary>
+    public Stratum Exchanged => new(B, A, D, C);
+
+    /// <summary>The table with both rows and columns exchanged; its odds ratio is the same.</summary>
+    public Stratum Turned => new(D, C, B, A);
+
     /// <summary>The stratum at a position of the flattened list.</summary>
     public static Stratum At(ReadOnlySpan<long> strata, int index)
     {
@@ -52,17 +60,15 @@ internal readonly record struct Stratum(double A, double B, double C, double D)
     }
 
     /// <summary>
-    /// The expected events of the first group with these margins when the odds ratio is <paramref name="ratio"/>:
-    /// the root inside the support of (1 − ψ) E² + (N − n1 − m + ψ (n1 + m)) E − ψ n1 m = 0.
+    /// The expected events of the first group with these margins when the odds ratio is <paramref name="ratio"/>, at
+    /// most 1, for a table whose first cell is the smaller of its diagonal: the root inside the support of
+    /// (1 − ψ) E² + (n2 − m + ψ (n1 + m)) E − ψ n1 m = 0, in the form that adds terms of one sign.
     /// </summary>
     public double FittedEvents(double ratio)
     {
-        double square = 1 - ratio;
-        double linear = Total - (square * (First + Events));
+        Debug.Assert(ratio <= 1 && A <= D, "Turn the table first.");
+        double linear = D - A + (ratio * (First + Events));
         double constant = ratio * First * Events;
-        double root = Math.Sqrt((linear * linear) + (4 * square * constant));
-
-        // Whichever form adds terms of one sign; the other would cancel.
-        return linear >= 0 ? 2 * constant / (linear + root) : (root - linear) / (2 * square);
+        return 2 * constant / (linear + Math.Sqrt((linear * linear) + (4 * (1 - ratio) * constant)));
     }
 }

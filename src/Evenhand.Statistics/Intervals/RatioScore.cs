@@ -8,8 +8,8 @@ namespace Evenhand.Statistics.Intervals;
 /// </summary>
 /// <remarks>
 /// p̃2 is the smaller root of N φ p² − b p + X = 0 with X = x1 + x2 and b = φ (n1 + x2) + x1 + n2. Written with the
-/// failures f1 and f2, its discriminant is a square plus 4 φ f1 f2, and both failure rates are quotients of terms of
-/// one sign; so neither rates near 0 nor rates near 1 lose digits.
+/// failures f1 and f2 its discriminant is a square plus 4 φ f1 f2, and both failure rates come from φ − 1 and f1 + f2; so
+/// neither rates near 0 nor rates near 1 lose digits that the end points would show.
 /// </remarks>
 internal readonly struct RatioScore(long x1, long n1, long x2, long n2, double target) : IFallingFunction
 {
@@ -35,13 +35,8 @@ internal readonly struct RatioScore(long x1, long n1, long x2, long n2, double t
         double divisor = (ratio * ((double)n1 + x2)) + x1 + n2 + root;
 
         double p2 = 2 * successes / divisor;
-        double q2 = Sum(shift + f1 + f2, root, -4 * f2 * excess * successes) / divisor;
-        double mirrored = (ratio * (f1 + f2)) - (excess * ((double)n2 + x1));
-        double q1 = Sum(mirrored, root, 4 * f1 * ratio * excess * successes) / divisor;
+        double q2 = Math.Max(0, shift + f1 + f2 + root) / divisor;
+        double q1 = Math.Max(0, (ratio * (f1 + f2)) - (excess * ((double)n2 + x1)) + root) / divisor;
         return (ratio * p2 * q1 / n1) + (ratio * ratio * p2 * q2 / n2);
     }
-
-    // term + root, where root² − term² is known as `product`: by conjugates when the two would cancel.
-    private static double Sum(double term, double root, double product) =>
-        term >= 0 ? term + root : Math.Max(0, product) / (root - term);
 }

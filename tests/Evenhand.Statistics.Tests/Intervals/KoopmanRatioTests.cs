@@ -66,6 +66,19 @@ public sealed class KoopmanRatioTests
         Assert.Equal(7 * 2, comparison.Compared);
     }
 
+    /// <summary>Source: the score equation solved at 60 digits (mpmath 1.2.1); rates so near 0 or 1 that the plain quadratic cancels.</summary>
+    [Theory]
+    [InlineData(999_999_999, 1_000_000_000, 999_999_997, 1_000_000_000, 0.99999999708957864, 1.0000000079248595, 2e-15)]
+    [InlineData(999, 1000, 999_999_999, 1_000_000_000, 0.99435744239639938, 0.99982345462920134, 2e-15)]
+    [InlineData(999_999_999, 1_000_000_000, 999, 1000, 1.0001765765445702, 1.0056745767296739, 2e-15)]
+    [InlineData(1, 1_000_000_000, 3, 1_000_000, 4.7764757892624667e-5, 0.0023262164466501711, 1e-13)]
+    public void Of_ExtremeRates_MatchesHighPrecision(long x1, long n1, long x2, long n2, double low, double high, double tolerance)
+    {
+        Interval interval = KoopmanRatio.Of(x1, n1, x2, n2, 0.95);
+        Relative.Equal(low, interval.Low, tolerance);
+        Relative.Equal(high, interval.High, tolerance);
+    }
+
     /// <summary>Source: closed form; with the second rate fitted at 1 the test is that of one proportion, which Wilson inverts.</summary>
     [Theory]
     [InlineData(1, 1)]
