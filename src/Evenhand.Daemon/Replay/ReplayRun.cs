@@ -29,6 +29,10 @@ internal sealed class ReplayRun
         _clock = clock;
         _progress = progress;
         _layout = new SumLayout(charter);
+        if (charter.Circuit is not null || charter.Rules.Count > 0)
+        {
+            Remark("the charter's circuit and rule are checked but not used in this version: modelled readings and flip risk are absent");
+        }
     }
 
     /// <summary>Replays without a store.</summary>

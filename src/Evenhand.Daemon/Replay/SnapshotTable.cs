@@ -7,7 +7,7 @@ namespace Evenhand.Daemon.Replay;
 /// <summary>A snapshot as tables that a person can read.</summary>
 internal static class SnapshotTable
 {
-    private const int Width = 140;
+    private const int Width = 160;
 
     private const string Caution =
         "A gap is a signal to investigate, not proof of unlawful discrimination; its absence is no clearance. Local law and licensed professionals decide.";
@@ -65,7 +65,7 @@ internal static class SnapshotTable
             string extent = $"{last["from"]} to {last["to"]}";
             if (same.Key > 0)
             {
-                yield return ((string)last["window"]!, $"Window {names}: {same.Key:N0} records, {extent}");
+                yield return ((string)same.First()!["window"]!, $"Window {names}: {same.Key:N0} records, {extent}");
             }
         }
     }
@@ -79,31 +79,46 @@ internal static class SnapshotTable
     {
         List<JsonNode> rows = [.. readings.Where(r => (string?)r!["window"] == window && (string?)r["grouping"] == grouping && r["slice"] is null).Select(r => r!)];
         string? reference = (string?)rows.FirstOrDefault(r => r["reference"] is not null)?["reference"];
-        Table table = new Table().Border(TableBorder.Simple).AddColumns(grouping, "decided", "favourable", "rate", $"gap to {Markup.Escape(reference ?? "–")}", "whatever is missing", "ratio", "state");
-        foreach (int column in (ReadOnlySpan<int>)[1, 2])
+        bool areLabelsMissing = rows.Exists(r => (string?)r["basis"] == "bounds" && Number(r["low"]) < Number(r["high"]));
+        Table table = new Table().Border(TableBorder.Simple).AddColumns(Markup.Escape(grouping), "decided", "favourable", "rate, %");
+        table.AddColumn(Markup.Escape(reference is null ? "gap, points" : $"gap to {reference}, points"));
+        if (areLabelsMissing)
         {
-            table.Columns[column].Alignment = Justify.Right;
+            table.AddColumn("whatever the missing labels");
         }
 
-        foreach (JsonNode rate in rows.Where(r => (string?)r["measure"] == "selection_rate" && (string?)r["basis"] == "observed"))
+        table.AddColumns("ratio", "state");
+        table.Columns[1].Alignment = table.Columns[2].Alignment = Justify.Right;
+        foreach (JsonNode rate in rows.Where(r => (string?)r["measure"] == "selection_rate" && (string?)r["basis"] == "observed" && !IsEmptySet(r)))
         {
-            string group = (string)rate["group"]!;
-            JsonNode? Find(string measure, string basis) =>
-                rows.FirstOrDefault(r => (string?)r["measure"] == measure && (string?)r["basis"] == basis && (string?)r["group"] == group);
-            JsonNode? gap = Find("selection_rate_gap", "observed"), bounds = Find("selection_rate_gap", "bounds"), ratio = Find("impact_ratio", "observed");
-            string[] states = [.. rows.Where(r => (string?)r["group"] == group && r["state"] is not null).Select(r => State((string)r["state"]!)).Distinct()];
-            table.AddRow(
-                Markup.Escape(group),
-                rate["suppressed"] is null ? $"{Count(rate["count"]):N0}" : "withheld",
-                rate["suppressed"] is null ? $"{Count(rate["favourable"]):N0}" : "",
-                Cell(rate, Percent),
-                gap is null ? group == reference ? "reference" : "" : Cell(gap, Points),
-                bounds is null ? "" : Cell(bounds, Points),
-                ratio is null ? "" : Cell(ratio, v => v.ToString("0.000", CultureInfo.InvariantCulture)),
-                string.Join(", ", states));
+            table.AddRow([.. GroupRow(rows, rate, reference, areLabelsMissing)]);
         }
 
         return table;
+    }
+
+    /// <summary>A row of unlisted or declined labels that has nothing to show.</summary>
+    private static bool IsEmptySet(JsonNode rate) =>
+        rate["cell"] is null && (rate["suppressed"] is not null || Count(rate["count"]) == 0);
+
+    private static IEnumerable<string> GroupRow(List<JsonNode> rows, JsonNode rate, string? reference, bool areLabelsMissing)
+    {
+        string group = (string)rate["group"]!;
+        JsonNode? Find(string measure, string basis) =>
+            rows.FirstOrDefault(r => (string?)r["measure"] == measure && (string?)r["basis"] == basis && (string?)r["group"] == group);
+        bool isWithheld = rate["suppressed"] is not null;
+        yield return Markup.Escape(group);
+        yield return isWithheld ? "withheld" : string.Create(CultureInfo.InvariantCulture, $"{Count(rate["count"]):N0}");
+        yield return isWithheld ? "" : string.Create(CultureInfo.InvariantCulture, $"{Count(rate["favourable"]):N0}");
+        yield return Cell(rate, Percent);
+        yield return Find("selection_rate_gap", "observed") is { } gap ? Cell(gap, Points) : group == reference ? "reference" : "";
+        if (areLabelsMissing)
+        {
+            yield return Find("selection_rate_gap", "bounds") is { } bounds ? Cell(bounds, Points) : "";
+        }
+
+        yield return Find("impact_ratio", "observed") is { } ratio ? Cell(ratio, v => v.ToString("0.000", CultureInfo.InvariantCulture)) : "";
+        yield return string.Join(", ", rows.Where(r => (string?)r["group"] == group && r["state"] is not null).Select(r => State((string)r["state"]!)).Distinct());
     }
 
     private static void Absences(JsonArray readings, IAnsiConsole console)
@@ -115,7 +130,7 @@ internal static class SnapshotTable
             return;
         }
 
-        Table table = new Table().Border(TableBorder.Simple).AddColumns("field", "", "share of records");
+        Table table = new Table().Border(TableBorder.Simple).AddColumns("field", "", "share of records, %");
         foreach (JsonNode row in rows)
         {
             table.AddRow(Markup.Escape((string)row["field"]!), (string?)row["measure"] == "missing_rate" ? "missing" : "unlisted", Cell(row, Percent));
@@ -133,13 +148,18 @@ internal static class SnapshotTable
         console.WriteLine(alerts.Count == 0 ? "No alert is open." : $"{alerts.Count} open {(alerts.Count == 1 ? "alert" : "alerts")}:");
         foreach (JsonNode? alert in alerts)
         {
+            // One line an alert: what is judged, the number with its ends, the limit, and what a person should know.
             string what = string.Join(' ', AlertKeys.Select(k => (string?)alert![k]).Where(t => t is not null));
-            string limit = alert!["below"] is { } below ? $", limit {below}" : alert["above"] is { } above ? $", limit {above}" : "";
+            string limit = Limit(alert!) is { } l ? $", limit {l}" : "";
             string value = alert["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
             console.WriteLine($"  {alert["severity"]} {alert["alert"]}: {what}{value}{note}".Replace(":  ", ": ", StringComparison.Ordinal));
         }
     }
+
+    /// <summary>The limit that was passed: an alert may have one on either side.</summary>
+    private static JsonNode? Limit(JsonNode alert) =>
+        alert["below"] is { } below && !(Number(alert["value"]) > Number(below)) ? below : alert["above"] ?? alert["below"];
 
     private static string Ends(JsonNode alert) =>
         alert["low"] is { } low && alert["high"] is { } high ? string.Create(CultureInfo.InvariantCulture, $" ({Number(low):0.####} to {Number(high):0.####})") : "";
@@ -166,7 +186,7 @@ internal static class SnapshotTable
         _ => state,
     };
 
-    private static string Percent(double share) => string.Create(CultureInfo.InvariantCulture, $"{share * 100:0.0} %");
+    private static string Percent(double share) => string.Create(CultureInfo.InvariantCulture, $"{share * 100:0.0}");
 
     private static string Points(double gap) => string.Create(CultureInfo.InvariantCulture, $"{gap * 100:+0.0;-0.0;0.0}");
 
