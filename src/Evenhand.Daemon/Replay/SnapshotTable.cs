@@ -151,7 +151,7 @@ internal static class SnapshotTable
             // One line an alert: what is judged, the number with its ends, the limit, and what a person should know.
             string what = string.Join(' ', AlertKeys.Select(k => (string?)alert![k]).Where(t => t is not null));
             string limit = Limit(alert!) is { } l ? $", limit {l}" : "";
-            string value = alert["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
+            string value = alert!["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
             console.WriteLine($"  {alert["severity"]} {alert["alert"]}: {what}{value}{note}".Replace(":  ", ": ", StringComparison.Ordinal));
         }
