@@ -137,7 +137,7 @@ internal static class SnapshotTable
             string limit = alert!["below"] is { } below ? $", limit {below}" : alert["above"] is { } above ? $", limit {above}" : "";
             string value = alert["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
-            console.WriteLine($"  {alert["severity"]} {alert["alert"]}: {what}{value}{note}".Replace(":  ", ": ", StringComparison.Ordinal));
+            console.WriteLine($"  {alert["severity"]} {alert["alert"]}{(what.Length > 0 ? $": {what}" : "")}{value}{note}");
         }
     }
 
