@@ -35,7 +35,11 @@ public abstract class CaseTest(ITestOutputHelper output)
     /// <summary>Holds the number of values compared and that none differs.</summary>
     private protected void AssertAgreement(int compared)
     {
-        output.WriteLine($"{Comparison.Compared} numbers compared");
+        foreach ((string id, int numbers) in Comparison.ComparedByCase)
+        {
+            output.WriteLine($"{id}: {numbers} numbers compared");
+        }
+
         Assert.True(Comparison.Differences.Length == 0, Comparison.Differences);
         Assert.Equal(compared, Comparison.Compared);
     }

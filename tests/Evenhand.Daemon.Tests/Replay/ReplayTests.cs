@@ -1,5 +1,8 @@
 using System.Globalization;
+using System.IO.Compression;
+using System.Text;
 using System.Text.Json.Nodes;
+using Evenhand.Testing;
 
 namespace Evenhand.Daemon.Tests.Replay;
 
@@ -146,10 +149,60 @@ public sealed class ReplayTests : IDisposable
                 .Append(Outcome(HarbourTown.CaseOf(22), 10 * day, "perhaps"))));
         ProgramRun run = ProgramRun.Replay(_charter, decisions, "--outcomes", outcomes, "--json", "--as-of", HarbourTown.At(60 * day));
         Assert.Equal(
-            """{"duplicate":1,"matched":20,"outside":2,"read":25,"rejected":1,"unmatched":1}""",
+            """{"duplicate":1,"excluded":0,"matched":20,"outside":2,"read":25,"rejected":1,"unmatched":1}""",
             run.Document["outcomes"]!.ToJsonString());
         JsonNode rate = Reading(run.Document, "outcome_rate", null);
         Assert.Equal((20L, 0.5), ((long)rate["count"]!, (double)rate["value"]!));
+    }
+
+    [Fact]
+    public void Outcomes_AfterTheAsOf_AreNotKnownYet()
+    {
+        string decisions = Grants(HarbourTown.Stream(40, river: 8, hill: 5));
+        const double Day = 24 * 60;
+        string outcomes = _folder.Write("outcomes.ndjson", string.Concat(
+            Enumerable.Range(0, 20).Select(i => Outcome(HarbourTown.CaseOf(i), (i < 15 ? 3 : 10) * Day, "true"))));
+        JsonObject document = ProgramRun.Replay(_charter, decisions, "--outcomes", outcomes, "--json", "--as-of", HarbourTown.At(5 * Day)).Document;
+        Assert.Equal(
+            """{"duplicate":0,"excluded":5,"matched":15,"outside":0,"read":20,"rejected":0,"unmatched":0}""",
+            document["outcomes"]!.ToJsonString());
+        Assert.Equal(15, (long)Reading(document, "outcome_rate", null)["count"]!);
+    }
+
+    [Fact]
+    public void Replay_GzipInTwoMembers_EqualsThePlainFileInEveryReading()
+    {
+        string first = HarbourTown.Stream(60, river: 8, hill: 5);
+        string second = HarbourTown.Record("z1", 61, "hill", "fast_track");
+        JsonObject plain = ProgramRun.Replay(_charter, Grants(first + second), "--json").Document;
+        File.WriteAllBytes(_folder.At("grants.ndjson.gz"), [.. Packed(first), .. Packed(second)]);
+        JsonObject packed = ProgramRun.Replay(_charter, _folder.At("grants.ndjson.gz"), "--json").Document;
+        Assert.Equal(61, Count(packed, "used"));
+        Assert.Equal(plain["readings"]!.ToJsonString(), packed["readings"]!.ToJsonString());
+    }
+
+    [Fact]
+    public void Table_OfAnOpenDataset_ShowsCountsRatesAndTheCaution()
+    {
+        ProgramRun run = ProgramRun.Replay(
+            TestData.Path("charters/open/mortgage.yaml"),
+            TestData.Path("hmda_boston_1990.csv"),
+            "--as-of",
+            "2031-01-01T00:00:00Z");
+        Assert.Equal((0, ""), (run.ExitCode, run.Error));
+        foreach (string text in new[] { "2,380 records read", "339", "243", "71.7 %", "-19.1", "0.790", "undecided", "No alert is open.", "no clearance" })
+        {
+            Assert.Contains(text, run.Out, StringComparison.Ordinal);
+        }
+    }
+
+    [Fact]
+    public void Table_WithManyRejected_NamesTheAlertAndItsNumbers()
+    {
+        string lines = HarbourTown.Stream(60, river: 8, hill: 5) + string.Concat(Enumerable.Repeat("{\n", 40));
+        ProgramRun run = ProgramRun.Replay(_charter, Grants(lines));
+        Assert.Contains("page rejected-share: 0.4 (", run.Out, StringComparison.Ordinal);
+        Assert.Contains("limit 0.05 (40 of 100 records rejected)", run.Out, StringComparison.Ordinal);
     }
 
     [Fact]
@@ -172,6 +225,17 @@ public sealed class ReplayTests : IDisposable
 
     private static string Outcome(string id, double minute, string upheld) =>
         $$"""{"case":"{{id}}","decided_at":"{{HarbourTown.At(minute)}}","upheld":"{{upheld}}"}""" + "\n";
+
+    private static byte[] Packed(string text)
+    {
+        using MemoryStream packed = new();
+        using (GZipStream gzip = new(packed, CompressionLevel.Optimal, leaveOpen: true))
+        {
+            gzip.Write(Encoding.UTF8.GetBytes(text));
+        }
+
+        return packed.ToArray();
+    }
 
     /// <summary>200 sound records, and one or more of everything that is counted apart.</summary>
     private static string Mixed() =>
