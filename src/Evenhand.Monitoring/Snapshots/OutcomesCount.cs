@@ -1,6 +1,7 @@
 namespace Evenhand.Monitoring.Snapshots;
 
 /// <summary>What became of the records of an outcomes file; <see cref="Read"/> is the sum of the others.</summary>
+/// <remarks>Where an id was decided more than once, an outcome is counted by the first decision that it is found for.</remarks>
 /// <param name="Read">Records read.</param>
 /// <param name="Matched">Outcomes that found their decision and count.</param>
 /// <param name="Unmatched">Outcomes whose decision was not among the records used.</param>

@@ -170,6 +170,22 @@ public sealed class ReplayTests : IDisposable
     }
 
     [Fact]
+    public void Outcomes_OfACaseDecidedTwice_ServeBothDecisionsAndCountOnce()
+    {
+        const double Day = 24 * 60;
+        string patient = _folder.Write("patient.yaml", HarbourTown.Charter.Replace("ahead: 30m", "ahead: 30d", StringComparison.Ordinal));
+        string decisions = Grants(
+            string.Concat(Enumerable.Range(0, 12).Select(i => HarbourTown.Record($"c{i}", i, "river", "fast_track")))
+            + HarbourTown.Record("c0", 2 * Day, "river", "manual_review"));
+        string outcomes = _folder.Write("outcomes.ndjson", string.Concat(Enumerable.Range(0, 12).Select(i => Outcome($"c{i}", 5 * Day, "true"))));
+        JsonObject document = ProgramRun.Replay(patient, decisions, "--outcomes", outcomes, "--json", "--as-of", HarbourTown.At(9 * Day)).Document;
+        Assert.Equal(
+            """{"duplicate":0,"excluded":0,"matched":12,"outside":0,"read":12,"rejected":0,"unmatched":0}""",
+            document["outcomes"]!.ToJsonString());
+        Assert.Equal(13, (long)Reading(document, "outcome_rate", null)["count"]!);
+    }
+
+    [Fact]
     public void Replay_GzipInTwoMembers_EqualsThePlainFileInEveryReading()
     {
         string first = HarbourTown.Stream(60, river: 8, hill: 5);
