@@ -7,9 +7,13 @@ namespace Evenhand.Testing;
 public sealed class CaseComparison
 {
     private readonly List<string> _differences = [];
+    private readonly SortedDictionary<string, int> _comparedByCase = new(StringComparer.Ordinal);
 
     /// <summary>Values compared so far.</summary>
     public int Compared { get; private set; }
+
+    /// <summary>Values compared so far by the case's name.</summary>
+    public IReadOnlyDictionary<string, int> ComparedByCase => _comparedByCase;
 
     /// <summary>The differences, one a line; empty when all agree.</summary>
     public string Differences => string.Join(Environment.NewLine, _differences);
@@ -49,6 +53,7 @@ public sealed class CaseComparison
     private void Check(ReferenceCase @case, string name, double got, double expected, Func<double, double, bool> accepts)
     {
         Compared++;
+        _comparedByCase[@case.Id] = _comparedByCase.GetValueOrDefault(@case.Id) + 1;
         if (!accepts(got, expected))
         {
             _differences.Add(string.Create(CultureInfo.InvariantCulture, $"{@case.Id} {name}: got {got:R}, expected {expected:R}. Source: {@case.Source}"));

@@ -34,6 +34,6 @@ internal static class CharterFile
     public static Charter Load(string path, CharterUse use)
     {
         CharterResult result = Read(path, use);
-        return result.Charter ?? throw new CommandFailure(2, string.Join(Environment.NewLine, result.Problems));
+        return result.Charter ?? throw new CommandFailure(2, string.Join(Environment.NewLine, result.Problems), isPlaced: true);
     }
 }

@@ -49,6 +49,7 @@ internal sealed partial class CommandLine(IServiceProvider services)
 
     private int Fail(Exception e) => e switch
     {
+        CommandFailure { IsPlaced: true } failure => FailAsIs(failure),
         CommandFailure failure => Fail(failure.ExitCode, failure.Message),
         SourceException => Fail(2, e.Message),
         StoreException or StoredStateException => Fail(3, e.Message),
@@ -56,6 +57,12 @@ internal sealed partial class CommandLine(IServiceProvider services)
         IOException or UnauthorizedAccessException => Fail(3, e.Message),
         _ => Fail(3, $"failed unexpectedly: {e.GetType().Name}: {e.Message.ReplaceLineEndings(" ")}; EVENHAND_LOG=debug shows where, please report it"),
     };
+
+    private int FailAsIs(CommandFailure failure)
+    {
+        _terminal.Error.WriteLine(failure.Message);
+        return failure.ExitCode;
+    }
 
     private int Fail(int exitCode, string message)
     {

@@ -126,6 +126,11 @@ internal sealed class ReplayCommand
             throw new CommandFailure(2, "- (stdin) cannot be read again, which --store needs: write it to a file first");
         }
 
+        if (request.Inputs.FirstOrDefault(i => i.StartsWith("--", StringComparison.Ordinal) && !File.Exists(i)) is { } option)
+        {
+            throw new CommandFailure(2, $"{option}: no such option, nor a file; see evenhand replay --help");
+        }
+
         if (request.Inputs.Count(i => i == "-") + (request.Outcomes == "-" ? 1 : 0) > 1)
         {
             throw new CommandFailure(2, "- (stdin) can be read only once");

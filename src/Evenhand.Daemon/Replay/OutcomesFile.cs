@@ -40,11 +40,13 @@ internal sealed class OutcomesFile
     }
 
     /// <summary>What became of the file's records.</summary>
+    /// <remarks>A decision's outcome that is found either counts, or came outside the time allowed, or was not known yet at the as-of.</remarks>
     public OutcomesCount CountsOf(ShardCounts counts) => new(
         _read,
         counts.OutcomesMatched,
         Index.Count - Index.FoundCount,
         counts.OutcomesOutside,
+        Index.FoundCount - counts.OutcomesMatched - counts.OutcomesOutside,
         Index.Duplicates,
         _rejected);
 

@@ -153,7 +153,7 @@ internal static class SnapshotTable
             string limit = Limit(alert!) is { } l ? $", limit {l}" : "";
             string value = alert!["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
-            console.WriteLine($"  {alert["severity"]} {alert["alert"]}: {what}{value}{note}".Replace(":  ", ": ", StringComparison.Ordinal));
+            console.WriteLine($"  {alert["severity"]} {alert["alert"]}{(what.Length > 0 ? $": {what}" : "")}{value}{note}");
         }
     }
 

@@ -127,6 +127,7 @@ public static class SnapshotBuilder
         ["matched"] = CanonicalJson.Integer(count.Matched),
         ["unmatched"] = CanonicalJson.Integer(count.Unmatched),
         ["outside"] = CanonicalJson.Integer(count.Outside),
+        ["excluded"] = CanonicalJson.Integer(count.Excluded),
         ["duplicate"] = CanonicalJson.Integer(count.Duplicate),
         ["rejected"] = CanonicalJson.Integer(count.Rejected),
     };

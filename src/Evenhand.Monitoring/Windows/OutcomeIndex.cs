@@ -66,16 +66,20 @@ public sealed class OutcomeIndex
     /// <param name="within">How much later an outcome may come, in microseconds.</param>
     /// <param name="asOf">Outcomes at or after this instant are not known yet.</param>
     /// <param name="outcome">The outcome, or unknown.</param>
+    /// <param name="isFirst">Whether this is the first decision that the outcome is found for.</param>
     /// <returns>Whether there is one that counts, one that came outside the time allowed, or none.</returns>
-    public OutcomeMatch Find(IdHash id, long decided, long within, long asOf, out OutcomeCode outcome)
+    public OutcomeMatch Find(IdHash id, long decided, long within, long asOf, out OutcomeCode outcome, out bool isFirst)
     {
         outcome = OutcomeCode.Unknown;
+        isFirst = false;
         if (!_places.TryGetValue(id, out int place))
         {
             return OutcomeMatch.None;
         }
 
-        _found[place / 8] |= (byte)(1 << (place % 8));
+        byte bit = (byte)(1 << (place % 8));
+        isFirst = (_found[place / 8] & bit) == 0;
+        _found[place / 8] |= bit;
         (long time, OutcomeCode found) = _outcomes[place];
         if (time != long.MinValue)
         {

@@ -273,9 +273,14 @@ public sealed class Shard
 
     private OutcomeCode OutcomeOf(IdHash id, long time)
     {
-        OutcomeMatch match = _outcomes!.Find(id, time, _within, _options.AsOf ?? long.MaxValue, out OutcomeCode outcome);
-        _counts.OutcomesMatched += match == OutcomeMatch.Counts ? 1 : 0;
-        _counts.OutcomesOutside += match == OutcomeMatch.Outside ? 1 : 0;
+        OutcomeMatch match = _outcomes!.Find(id, time, _within, _options.AsOf ?? long.MaxValue, out OutcomeCode outcome, out bool isFirst);
+        if (isFirst)
+        {
+            // A later decision of the same id takes the outcome too, but an outcome is counted once.
+            _counts.OutcomesMatched += match == OutcomeMatch.Counts ? 1 : 0;
+            _counts.OutcomesOutside += match == OutcomeMatch.Outside ? 1 : 0;
+        }
+
         return outcome;
     }
 
