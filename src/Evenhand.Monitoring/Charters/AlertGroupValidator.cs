@@ -33,7 +33,7 @@ internal static class AlertGroupValidator
             alert.Map.Report(
                 "grouping",
                 $"{QuotedText.Of(rule.Grouping)} is no group or intersection",
-                NearestName.Suggest(rule.Grouping, draft.GroupingNames, "list it under groups or intersections"));
+                GroupingMend(draft, rule.Grouping));
         }
         else if (groups.All(g => g.IsSound))
         {
@@ -66,6 +66,14 @@ internal static class AlertGroupValidator
         {
             alert.Map.Report("group", $"{QuotedText.Of(text)} is the reference, which is not compared with itself", "name another group, or remove the key");
         }
+    }
+
+    private static string GroupingMend(CharterDraft draft, string name)
+    {
+        string[] parts = name.Split('+');
+        return parts.Length > 1 && parts.All(p => draft.Group(p) is not null) && !draft.Intersections.Exists(i => parts.ToHashSet().SetEquals(i.Names))
+            ? $"add [{string.Join(", ", parts)}] to intersections"
+            : NearestName.Suggest(name, draft.GroupingNames, "list it under groups or intersections");
     }
 
     private static string Mend(string text, List<GroupField> groups) => groups.Count == 1

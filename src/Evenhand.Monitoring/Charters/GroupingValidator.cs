@@ -7,19 +7,17 @@ namespace Evenhand.Monitoring.Charters;
 /// <remarks>Crossed groups may be many: without named references they are compared with the one of the highest rate.</remarks>
 internal static class GroupingValidator
 {
-    private const string ReferenceMend = "name a reference, since beyond 12 groups pairs are compared with one only";
-
     /// <summary>Checks a draft.</summary>
     public static void Check(CharterDraft draft)
     {
         foreach (Drafted<GroupField> group in draft.Groups ?? [])
         {
-            if (group.IsSound && IsLarge(group.Value))
+            if (group.IsSound && group.Value.Reference is null && group.Value.ListedCount > CharterLimits.ComparedWithoutReference)
             {
                 group.Map.Report(
                     "reference",
                     string.Create(CultureInfo.InvariantCulture, $"is missing for {group.Value.ListedCount} groups"),
-                    ReferenceMend);
+                    "name one of them; beyond 12 groups, pairs are compared with a named reference only");
             }
         }
 
@@ -32,9 +30,6 @@ internal static class GroupingValidator
             }
         }
     }
-
-    private static bool IsLarge(GroupField group) =>
-        group.Reference is null && group.ListedCount > CharterLimits.ComparedWithoutReference;
 
     private static bool NamesHold(CharterDraft draft, IReadOnlyList<string> names, KeyedNode at)
     {

@@ -21,8 +21,8 @@ internal static class IntersectionReader
             if (names.Count is < 2 or > CharterLimits.CrossedGroups)
             {
                 item.Report(
-                    FormattableString.Invariant($"crosses {names.Count} groups"),
-                    FormattableString.Invariant($"name 2 to {CharterLimits.CrossedGroups}"));
+                    FormattableString.Invariant($"has {names.Count} entries"),
+                    FormattableString.Invariant($"name 2 to {CharterLimits.CrossedGroups} groups"));
                 continue;
             }
 
