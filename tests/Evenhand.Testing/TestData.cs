@@ -5,11 +5,11 @@ public static class TestData
 {
     private static readonly Lazy<string> _root = new(FindRoot);
 
-    /// <summary>The full path of a file given relative to tests/data.</summary>
+    /// <summary>The full path of a file or folder given relative to tests/data.</summary>
     public static string Path(string relative)
     {
         string path = System.IO.Path.Combine(_root.Value, relative);
-        return File.Exists(path) ? path : throw new FileNotFoundException($"tests/data holds no '{relative}'.", path);
+        return System.IO.Path.Exists(path) ? path : throw new FileNotFoundException($"tests/data holds no '{relative}'.", path);
     }
 
     private static string FindRoot()

@@ -109,12 +109,23 @@ public static class ComplementarySuppression
         return isNews;
     }
 
+    /// <summary>
+    /// What to withhold beside a count: the smallest one above nothing in a sum with it; else an empty one, which the reader then
+    /// no longer knows to be empty; else anything in a sum with what is withheld already.
+    /// </summary>
     private static int Complement(SuppressionTable table, int item, SortedSet<int> withheld)
     {
-        IEnumerable<int> beside = table.Sums
-            .Where(s => s.Total == item || s.Parts.Contains(item))
-            .SelectMany(s => s.Parts.Append(s.Total))
-            .Where(i => i != item && table.ExposureOf(i) == CellExposure.Published && !withheld.Contains(i) && table.CountOf(i) > 0);
-        return beside.DefaultIfEmpty(-1).MinBy(i => i < 0 ? (long.MaxValue, i) : (table.CountOf(i), i));
+        int[] beside = Beside(table, i => i == item, withheld);
+        int[] further = beside.Length > 0 ? beside : Beside(table, withheld.Contains, withheld);
+        return further.DefaultIfEmpty(-1).MinBy(i => i < 0 ? (true, 0L, i) : (table.CountOf(i) == 0, table.CountOf(i), i));
     }
+
+    private static int[] Beside(SuppressionTable table, Func<int, bool> isMeant, SortedSet<int> withheld) =>
+    [
+        .. table.Sums
+            .Where(s => isMeant(s.Total) || s.Parts.Any(isMeant))
+            .SelectMany(s => s.Parts.Append(s.Total))
+            .Where(i => table.ExposureOf(i) == CellExposure.Published && !withheld.Contains(i))
+            .Distinct(),
+    ];
 }

@@ -37,7 +37,15 @@ internal static class CanonicalNumber
     // The runtime's own shortest form, "d.dddE+ddd" or plain: its digits are ECMAScript's, its layout is not.
     private static int Shortest(double value, Span<byte> to)
     {
-        Math.Abs(value).TryFormat(to, out var length, "R", CultureInfo.InvariantCulture);
+        var magnitude = Math.Abs(value);
+        magnitude.TryFormat(to, out var length, "R", CultureInfo.InvariantCulture);
+
+        // At a few powers of two (2^-958 is one) the runtime's shortest form reads back as the double below. Seventeen digits never do.
+        if (double.Parse(to[..length], CultureInfo.InvariantCulture) != magnitude)
+        {
+            magnitude.TryFormat(to, out length, "E16", CultureInfo.InvariantCulture);
+        }
+
         return length;
     }
 

@@ -2,7 +2,6 @@ using System.Globalization;
 using System.Text;
 using Evenhand.Daemon.Stores.Sqlite;
 using Microsoft.Data.Sqlite;
-using Xunit;
 
 namespace Evenhand.Daemon.Tests.Processes;
 

@@ -76,52 +76,34 @@ public sealed class CanonicalNumberTests
 
     private static string Text(double value) => Encoding.UTF8.GetString(CanonicalJson.Serialize(JsonValue.Create(value)));
 
-    // n, k and s of the definition: the fewest digits k such that s·10^(n-k) reads back as the value, of
-    // those the s nearest to it, of two equally near the even one. Everything over one common denominator.
+    // The definition of ECMAScript's Number::toString: the fewest digits k such that s·10^(n-k) reads back as the value, of
+    // those the s nearest to it. The runtime's "E" format rounds correctly to any number of digits and its parser is exact, so
+    // the k-digit decimal nearest to the value is tried first, then its neighbours: at powers of two the doubles below lie closer,
+    // and the nearest decimal may fall to the double below while the next one up does not.
     private static string Define(double value)
     {
-        var bits = BitConverter.DoubleToInt64Bits(Math.Abs(value));
-        var biased = (int)(bits >> 52);
-        BigInteger mantissa = biased == 0 ? bits : (bits & ((1L << 52) - 1)) | (1L << 52);
-        var exponent = Math.Max(biased, 1) - 1075;
-        var even = mantissa.IsEven;
-        var closer = biased > 1 && (bits & ((1L << 52) - 1)) == 0;
-        // Value and the two midpoints to its neighbours, in quarters of the last place.
-        BigInteger middle = mantissa * 4, low = middle - (closer ? 1 : 2), high = middle + 2;
-        var (up, down) = exponent >= 2 ? (BigInteger.One << (exponent - 2), BigInteger.One) : (BigInteger.One, BigInteger.One << (2 - exponent));
-        for (var k = 1; ; k++)
+        if (value == 0)
         {
-            var power = (int)Math.Floor(BigInteger.Log10(middle * up) - BigInteger.Log10(down)) + 1 - k;
-            if (Nearest(power + 1) is { } above && above.ToString(CultureInfo.InvariantCulture).Length == k)
-            {
-                return Lay(above.ToString(CultureInfo.InvariantCulture), power + 1 + k, value < 0);
-            }
-
-            if (Nearest(power) is { } s && s.ToString(CultureInfo.InvariantCulture).Length == k)
-            {
-                return Lay(s.ToString(CultureInfo.InvariantCulture), power + k, value < 0);
-            }
+            return "0";
         }
 
-        BigInteger? Nearest(int power)
+        for (var k = 1; k <= 17; k++)
         {
-            var unit = BigInteger.Pow(10, Math.Abs(power));
-            var (times, over) = power < 0 ? (unit * up, down) : (up, down * unit);
-            var floor = BigInteger.Divide(middle * times, over);
-            BigInteger? best = null;
-            BigInteger bestDistance = 0;
-            for (var s = floor; s <= floor + 1; s++)
+            var text = Math.Abs(value).ToString($"E{k - 1}", CultureInfo.InvariantCulture);
+            var mark = text.IndexOf('E', StringComparison.Ordinal);
+            var s = BigInteger.Parse(text[..mark].Replace(".", "", StringComparison.Ordinal), CultureInfo.InvariantCulture);
+            var n = int.Parse(text[(mark + 1)..], CultureInfo.InvariantCulture) + 1;
+            foreach (var near in (BigInteger[])[s, s + 1, s - 1])
             {
-                BigInteger at = s * over, from = low * times, to = high * times, distance = BigInteger.Abs(at - (middle * times));
-                var inside = even ? at >= from && at <= to : at > from && at < to;
-                if (s > 0 && inside && (best is null || distance < bestDistance || (distance == bestDistance && s.IsEven)))
+                var digits = near.ToString(CultureInfo.InvariantCulture);
+                if (digits.Length == k && double.Parse($"{digits}E{n - k}", CultureInfo.InvariantCulture) == Math.Abs(value))
                 {
-                    (best, bestDistance) = (s, distance);
+                    return Lay(digits, n, value < 0);
                 }
             }
-
-            return best;
         }
+
+        throw new InvalidOperationException($"17 digits always suffice, but not for {value:R}");
     }
 
     private static string Lay(string digits, int n, bool negative)
