@@ -1,6 +1,6 @@
 using System.Text.Json;
 using System.Text.Json.Nodes;
-using Evenhand.Daemon.Commands;
+using Evenhand.Daemon.Sources;
 
 namespace Evenhand.Daemon.Evidence;
 
@@ -19,7 +19,7 @@ internal sealed class FileEvidence : IEvidenceSource
     public string Name { get; }
 
     /// <summary>Reads an exported file.</summary>
-    /// <exception cref="CommandFailure">It cannot be read.</exception>
+    /// <exception cref="SourceException">It cannot be read.</exception>
     public static FileEvidence Open(string path)
     {
         try
@@ -28,11 +28,11 @@ internal sealed class FileEvidence : IEvidenceSource
         }
         catch (Exception e) when (e is FileNotFoundException or DirectoryNotFoundException)
         {
-            throw new CommandFailure(2, $"{path}: no such file; check the name");
+            throw new SourceException($"{path}: no such file; check the name", e);
         }
         catch (Exception e) when (e is IOException or UnauthorizedAccessException)
         {
-            throw new CommandFailure(2, $"{path}: cannot be read ({e.Message}); check that it is a file and its permissions");
+            throw new SourceException($"{path}: cannot be read ({e.Message}); check that it is a file and its permissions", e);
         }
     }
 

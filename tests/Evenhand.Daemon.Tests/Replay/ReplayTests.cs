@@ -206,7 +206,7 @@ public sealed class ReplayTests : IDisposable
             "--as-of",
             "2031-01-01T00:00:00Z");
         Assert.Equal((0, ""), (run.ExitCode, run.Error));
-        foreach (string text in new[] { "2,380 records read", "339", "243", "71.7 %", "-19.1", "0.790", "undecided", "No alert is open.", "no clearance" })
+        foreach (string text in new[] { "2,380 records read", "339", "243", "71.7 (66.7 to 76.2)", "-19.1", "0.790", "undecided", "No alert is open.", "no clearance" })
         {
             Assert.Contains(text, run.Out, StringComparison.Ordinal);
         }
