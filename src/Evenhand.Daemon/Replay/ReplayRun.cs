@@ -161,7 +161,7 @@ internal sealed class ReplayRun
         {
             if (!_refusals.TryGetValue(entry.Reason, out RefusalSample? sample))
             {
-                sample = new RefusalSample($"{_request.Inputs[entry.Input]}:{entry.Position + 1}");
+                sample = new RefusalSample($"{(_request.Inputs[entry.Input] == "-" ? "stdin" : _request.Inputs[entry.Input])}:{entry.Position + 1}");
                 _refusals.Add(entry.Reason, sample);
             }
 

@@ -136,6 +136,13 @@ internal sealed class CsvFile : RecordFile
             return;
         }
 
+        // A quotation mark that is never closed takes the rest of the file into one row: that must not pass for a value.
+        if (row.Span.Count('"') % 2 != 0)
+        {
+            batch.Reject(RejectReason.RaggedRow, Position);
+            return;
+        }
+
         _decoder.Begin();
         foreach (int column in _decoder.Columns)
         {

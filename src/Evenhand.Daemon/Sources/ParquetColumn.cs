@@ -18,6 +18,12 @@ internal static class ParquetColumn
             throw new InvalidDataException($"column {field.Name} is a list");
         }
 
+        // The library's schema gives texts and bytes as memory of characters and bytes.
+        if (field.ClrType == typeof(ReadOnlyMemory<char>))
+        {
+            return Strings(group, field, rows);
+        }
+
         return Type.GetTypeCode(field.ClrType) switch
         {
             TypeCode.Boolean => Values<bool>(group, field, rows, b => b ? "true" : "false"),
@@ -40,7 +46,7 @@ internal static class ParquetColumn
 
     private static string?[] Others(ParquetRowGroupReader group, DataField field, int rows)
     {
-        if (field.ClrType == typeof(byte[]))
+        if (field.ClrType == typeof(byte[]) || field.ClrType == typeof(ReadOnlyMemory<byte>))
         {
             byte[]?[] bytes = new byte[]?[rows];
             group.ReadAsync(field, bytes.AsMemory()!).AsTask().GetAwaiter().GetResult();

@@ -55,7 +55,7 @@ public sealed class ComplementarySuppressionTests
             {
                 string group = (string)hidden[0]["group"]!;
                 int language = Array.IndexOf(["river", "hill", "coast"], group);
-                Assert.DoesNotContain(stream.Count(r => r.Language == language && r.Decision != Records.DecisionCode.Other), Enumerable.Range(1, 9));
+                Assert.DoesNotContain(stream.Count(r => r.Language == language && r.Decision != Evenhand.Monitoring.Records.DecisionCode.Other), Enumerable.Range(1, 9));
             }
         }
     }
