@@ -10,11 +10,13 @@ namespace Evenhand.Monitoring.Windows;
 public sealed class GroupingShape
 {
     private readonly int[] _strides;
+    private readonly int[] _groups;
 
     internal GroupingShape(string? name, IReadOnlyList<int> groups, IReadOnlyList<CodedField> fields)
     {
         Name = name;
         Groups = groups;
+        _groups = [.. groups];
         Fields = [.. groups.Select(g => fields[g])];
         _strides = new int[groups.Count];
         int cells = 1;
@@ -55,10 +57,11 @@ public sealed class GroupingShape
     /// <param name="codes">The record's codes, groups first.</param>
     public int CellOf(ReadOnlySpan<ushort> codes)
     {
+        // Cells are numbered below the layout's limit, so nothing here can overflow.
         int cell = 0;
-        for (int i = 0; i < _strides.Length; i++)
+        for (int i = 0; i < _groups.Length; i++)
         {
-            cell += codes[Groups[i]] * _strides[i];
+            cell = unchecked(cell + (codes[_groups[i]] * _strides[i]));
         }
 
         return cell;

@@ -8,6 +8,12 @@ internal sealed class RecordSums(SumLayout layout)
     private readonly int[] _ones = new int[layout.Groupings.Count * (2 + (2 * layout.AbsenceFields.Count))];
     private readonly int[] _absent = new int[layout.AbsenceFields.Count];
     private readonly int[] _scores = new int[layout.Groupings.Count];
+
+    // Arrays, not lists behind interfaces: these are walked for every record (measured: a quarter of the whole pipeline's time).
+    private readonly GroupingShape[] _shapes = [.. layout.Groupings];
+    private readonly int[] _listed = [.. layout.Records.Fields.Select(f => f.ListedCount)];
+    private readonly int _absenceStride = layout.AbsenceFields.Count * 2;
+    private readonly bool _hasScore = layout.Records.HasScore;
     private int _oneCount;
     private int _absentCount;
     private bool _scored;
@@ -30,12 +36,12 @@ internal sealed class RecordSums(SumLayout layout)
         SetScore(batch.Scores[entry]);
         int count = ((int)decision * 3) + (int)outcome;
         int stratum = layout.Strata > 0 ? layout.StratumOf(codes) : -1;
-        for (int g = 0; g < layout.Groupings.Count; g++)
+        for (int g = 0; g < _shapes.Length; g++)
         {
-            GroupingShape shape = layout.Groupings[g];
+            GroupingShape shape = _shapes[g];
             int cell = shape.CellOf(codes);
             _ones[_oneCount++] = shape.CountsAt + (cell * SumLayout.CountWidth) + count;
-            int absences = shape.AbsencesAt + (cell * layout.AbsenceFields.Count * 2);
+            int absences = shape.AbsencesAt + (cell * _absenceStride);
             for (int a = 0; a < _absentCount; a++)
             {
                 _ones[_oneCount++] = absences + _absent[a];
@@ -55,7 +61,11 @@ internal sealed class RecordSums(SumLayout layout)
     {
         foreach (int at in _ones.AsSpan(0, _oneCount))
         {
-            values[at]++;
+            // A count of records stays far below 2⁶³.
+            unchecked
+            {
+                values[at]++;
+            }
         }
 
         if (_scored)
@@ -75,7 +85,7 @@ internal sealed class RecordSums(SumLayout layout)
     private void SetOther(ReadOnlySpan<ushort> codes)
     {
         _scored = false;
-        foreach (GroupingShape shape in layout.Groupings)
+        foreach (GroupingShape shape in _shapes)
         {
             _ones[_oneCount++] = shape.CountsAt + (shape.CellOf(codes) * SumLayout.CountWidth) + 6;
         }
@@ -96,17 +106,17 @@ internal sealed class RecordSums(SumLayout layout)
     private void FindAbsences(ReadOnlySpan<ushort> codes, long score)
     {
         _absentCount = 0;
-        IReadOnlyList<Charters.CodedField> fields = layout.Records.Fields;
+        ReadOnlySpan<int> listed = _listed;
         for (int f = 0; f < codes.Length; f++)
         {
-            int special = codes[f] - fields[f].ListedCount;
+            int special = codes[f] - listed[f];
             if (special is 0 or 1)
             {
                 _absent[_absentCount++] = (f * 2) + special;
             }
         }
 
-        if (layout.Records.HasScore && score < 0)
+        if (_hasScore && score < 0)
         {
             _absent[_absentCount++] = (codes.Length * 2) + (score == RecordBatch.MissingScore ? 0 : 1);
         }

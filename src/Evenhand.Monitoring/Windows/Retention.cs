@@ -14,6 +14,9 @@ public sealed class Retention(CharterDuration keep)
 
     private readonly long _days = keep.Microseconds;
 
+    /// <summary>How far behind the newest event time every tier certainly keeps a record; the longest day has 25 hours.</summary>
+    public long ByAllTiers => Math.Min(Minutes - EventTime.Hour, _days - (26 * EventTime.Hour));
+
     /// <summary>The earliest start of a bucket that is still kept.</summary>
     /// <param name="tier">The tier.</param>
     /// <param name="newest">The newest event time, or the as-of of a replay where it is given.</param>

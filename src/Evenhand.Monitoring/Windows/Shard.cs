@@ -24,6 +24,7 @@ public sealed class Shard
     private readonly long[] _nextOffsets;
     private readonly bool[] _ended;
     private readonly long _within;
+    private readonly long _keptByAll;
     private ShardCounts _counts = new();
     private List<RefusedEntry> _refused = [];
     private List<BucketKey> _dropped = [];
@@ -45,6 +46,7 @@ public sealed class Shard
         _options = options;
         _outcomes = outcomes;
         _retention = new Retention(charter.Keep);
+        _keptByAll = _retention.ByAllTiers;
         _days = new LocalDays(charter.TimeZone);
         _buckets = new BucketTable(layout.Length, _retention);
         _ids = charter.RecordId is null ? null : new RecentIds(charter.Deduplicate.Microseconds);
@@ -287,10 +289,25 @@ public sealed class Shard
     private void AddTo(long time, int slice)
     {
         long anchor = _options.AsOf ?? _newest;
+        if (time >= anchor - _keptByAll)
+        {
+            AddToAll(time, slice);
+            return;
+        }
+
         AddTo(new BucketKey(Tier.Minute, EventTime.Floor(time, EventTime.Minute), slice), anchor);
         AddTo(new BucketKey(Tier.QuarterHour, EventTime.Floor(time, EventTime.QuarterHour), slice), anchor);
         AddTo(new BucketKey(Tier.Day, _days.DayOf(time).Start, slice), anchor);
         AddTo(new BucketKey(Tier.All, 0, slice), anchor);
+    }
+
+    /// <summary>The common case: a record so new that every tier keeps it.</summary>
+    private void AddToAll(long time, int slice)
+    {
+        _sums.AddTo(_buckets.Open(new BucketKey(Tier.Minute, EventTime.Floor(time, EventTime.Minute), slice)));
+        _sums.AddTo(_buckets.Open(new BucketKey(Tier.QuarterHour, EventTime.Floor(time, EventTime.QuarterHour), slice)));
+        _sums.AddTo(_buckets.Open(new BucketKey(Tier.Day, _days.DayOf(time).Start, slice)));
+        _sums.AddTo(_buckets.Open(new BucketKey(Tier.All, 0, slice)));
     }
 
     private void AddTo(BucketKey key, long anchor)
