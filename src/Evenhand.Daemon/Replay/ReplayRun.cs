@@ -93,7 +93,7 @@ internal sealed class ReplayRun
 
     private void ReadInputs(Shard shard, IdHasher hasher, List<string>? knownHashes, RunJournal? journal)
     {
-        RecordBatch batch = new(_layout.Records, _request.BatchSize);
+        RecordBatch batch = new(_layout.Records, _request.BatchSize, _charter.KeepRejected);
         CommitClock due = new(_clock, _request.CommitEvery);
         for (int input = 0; input < _request.Inputs.Count; input++)
         {

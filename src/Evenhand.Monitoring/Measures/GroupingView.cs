@@ -18,7 +18,7 @@ public sealed class GroupingView
         Groups = [.. shape.ListedCells().Select(CellOf)];
         Set = shape.Groups.Count == 1 ? [Special(shape.Fields[0].UnlistedCode), Special(shape.Fields[0].DeclinedCode)] : [];
         IsReferenceNamed = shape.Groups.Count > 0 && shape.Groups.All(g => Charter.Groups[g].Reference is not null);
-        Reference = shape.Groups.Count == 0 ? null : IsReferenceNamed ? NamedReference() : HighestReference();
+        Reference = shape.Groups.Count == 0 ? null : IsReferenceNamed ? NamedReference() : StatedReference() ?? HighestReference();
         long known = Groups.Sum(g => g.Counts.Decided);
         long decided = sums.Counts(sums.Layout.Groupings[0], 0).Decided;
         KnownShare = decided == 0 ? double.NaN : (double)known / decided;
@@ -139,6 +139,9 @@ public sealed class GroupingView
         int cell = Shape.CellOf([.. Shape.Groups.Select(g => Charter.Groups[g].Reference!.Value)]);
         return Groups.First(g => g.Index == cell);
     }
+
+    private GroupCell? StatedReference() =>
+        Sums.StatedReferences.TryGetValue(Shape.Name!, out int cell) ? Groups.First(g => g.Index == cell) : null;
 
     private GroupCell? HighestReference()
     {

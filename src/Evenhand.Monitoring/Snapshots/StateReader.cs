@@ -30,7 +30,7 @@ public sealed class StateReader(SumLayout layout)
         {
             return [.. state["windows"]!.AsArray().Select(w => Window(w!.AsObject()))];
         }
-        catch (Exception e) when (e is NullReferenceException or InvalidOperationException or OverflowException or ArgumentException or IndexOutOfRangeException)
+        catch (Exception e) when (e is NullReferenceException or InvalidOperationException or KeyNotFoundException or OverflowException or ArgumentException or IndexOutOfRangeException)
         {
             throw new FormatException("the state is not laid out as this snapshot's charter asks", e);
         }
@@ -46,13 +46,19 @@ public sealed class StateReader(SumLayout layout)
             Dictionary<string, int> cells = Enumerable.Range(0, shape.Cells).ToDictionary(c => string.Join(Separator, shape.Labels(c)));
             foreach (JsonNode? cell in grouping["cells"]!.AsArray())
             {
-                string label = string.Join(Separator, cell!["cell"]!.AsArray().Select(l => (string)l!));
-                Cell(sums, shape, cells[label], cell.AsObject());
+                Cell(sums, shape, cells[LabelOf(cell!["cell"]!)], cell.AsObject());
+            }
+
+            if (grouping["reference"] is { } reference)
+            {
+                sums.StatedReferences[name!] = cells[LabelOf(reference)];
             }
         }
 
         return sums;
     }
+
+    private static string LabelOf(JsonNode labels) => string.Join(Separator, labels.AsArray().Select(l => (string)l!));
 
     private void Cell(WindowSums sums, GroupingShape shape, int cell, JsonObject written)
     {

@@ -1,6 +1,7 @@
 using System.Numerics;
 using System.Text.Json.Nodes;
 using Evenhand.Monitoring.Disclosure;
+using Evenhand.Monitoring.Measures;
 using Evenhand.Monitoring.Records;
 using Evenhand.Monitoring.Windows;
 
@@ -48,6 +49,13 @@ public sealed class StateWriter(WithheldCells withheld)
         if (shape.Name is not null)
         {
             grouping["grouping"] = shape.Name;
+
+            // Which group has the highest rate cannot be told from what is left when that group is withheld.
+            GroupingView view = new(sums, shape);
+            if (!view.IsReferenceNamed && view.Reference is { } reference)
+            {
+                grouping["reference"] = new JsonArray([.. shape.Labels(reference.Index).Select(l => (JsonNode)l)]);
+            }
         }
 
         return grouping;

@@ -23,6 +23,9 @@ public sealed class WindowSums(SumLayout layout, string window, string? slice, l
     /// <summary>The sums.</summary>
     public long[] Values { get; } = values;
 
+    /// <summary>By grouping, the cell that was compared with when the sums were whole; empty unless they come from a state that withholds some.</summary>
+    public Dictionary<string, int> StatedReferences { get; } = [];
+
     /// <summary>The decisions of a cell by outcome.</summary>
     public CellCounts Counts(GroupingShape shape, int cell)
     {

@@ -25,6 +25,19 @@ public sealed class RecomputationTests
         Assert.True(minimumCell > 0 || report.NotRecomputable == 0);
     }
 
+    /// <summary>Where the charter names no reference, the group of the highest rate may itself be withheld.</summary>
+    [Theory]
+    [InlineData(40)]
+    [InlineData(120)]
+    [InlineData(300)]
+    public void Compare_ReferenceNotNamed_DiffersNowhere(int records)
+    {
+        Charter charter = SampleStream.Charter(minimumCell: 10, reference: null);
+        JsonObject document = SampleSnapshot.Build(charter, SampleStream.Random(records, records, EventTime.Day));
+
+        Assert.Empty(Recomputation.Compare(document, charter).Differences);
+    }
+
     [Fact]
     public void Compare_ChangedReading_IsNamed()
     {
