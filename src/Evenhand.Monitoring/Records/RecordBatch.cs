@@ -42,6 +42,7 @@ public sealed class RecordBatch
         SliceCount = layout.Slices;
         Times = new long[capacity];
         Ids = new IdHash[capacity];
+        CaseIds = new IdHash[capacity];
         Decisions = new DecisionCode[capacity];
         Outcomes = new OutcomeCode[capacity];
         Scores = new long[capacity];
@@ -73,8 +74,11 @@ public sealed class RecordBatch
     /// <summary>Event time in microseconds since 1970-01-01T00:00:00Z.</summary>
     public long[] Times { get; }
 
-    /// <summary>Hashed ids.</summary>
+    /// <summary>Hashed ids; with a revision, of the pair.</summary>
     public IdHash[] Ids { get; }
+
+    /// <summary>Hashed ids as an outcome without a revision has them: the same as <see cref="Ids"/> where the charter has no revision.</summary>
+    public IdHash[] CaseIds { get; }
 
     /// <summary>Decisions.</summary>
     public DecisionCode[] Decisions { get; }

@@ -138,7 +138,7 @@ internal sealed class RecordEncoder
 
         if (_places.Revision.Count == 0)
         {
-            batch.Ids[batch.Count] = _hasher.Hash(id.Of(bytes));
+            batch.Ids[batch.Count] = batch.CaseIds[batch.Count] = _hasher.Hash(id.Of(bytes));
             return RejectReason.None;
         }
 
@@ -149,6 +149,7 @@ internal sealed class RecordEncoder
         }
 
         batch.Ids[batch.Count] = _hasher.Hash(id.Of(bytes), revision.Of(bytes));
+        batch.CaseIds[batch.Count] = _hasher.Hash(id.Of(bytes), default);
         return RejectReason.None;
     }
 

@@ -49,6 +49,9 @@ public sealed class OutcomeIndex
         Array.Resize(ref _found, (_outcomes.Count + 7) / 8);
     }
 
+    /// <summary>Whether there is an outcome under an id.</summary>
+    public bool Has(IdHash id) => _places.ContainsKey(id);
+
     /// <summary>Takes the bits of found outcomes back from the store.</summary>
     public void LoadFound(ReadOnlySpan<byte> found)
     {

@@ -260,7 +260,8 @@ public sealed class Shard
             // 5. The record's own outcome wins over the file's.
             if (_outcomes is not null && outcome == OutcomeCode.Unknown)
             {
-                outcome = OutcomeOf(batch.Ids[i], time);
+                // One that names its revision counts for that alone, one that names none for every revision.
+                outcome = OutcomeOf(_outcomes.Has(batch.Ids[i]) ? batch.Ids[i] : batch.CaseIds[i], time);
             }
         }
 

@@ -94,7 +94,7 @@ public static class SampleStream
     {
         int at = batch.Count;
         batch.Times[at] = record.Time;
-        batch.Ids[at] = new IdHash(unchecked((ulong)record.Id * 0x9E3779B97F4A7C15), (ulong)record.Id);
+        batch.Ids[at] = batch.CaseIds[at] = new IdHash(unchecked((ulong)record.Id * 0x9E3779B97F4A7C15), (ulong)record.Id);
         batch.Decisions[at] = record.Decision;
         batch.Outcomes[at] = record.Outcome;
         batch.Scores[at] = record.Score;
