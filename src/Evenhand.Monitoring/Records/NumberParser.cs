@@ -49,6 +49,10 @@ internal static class NumberParser
         return true;
     }
 
-    private static bool TryParseSlowly(ReadOnlySpan<byte> text, out double value) =>
-        double.TryParse(text, Style, CultureInfo.InvariantCulture, out value) && double.IsFinite(value);
+    private static bool TryParseSlowly(ReadOnlySpan<byte> text, out double value)
+    {
+        // The platform's parser takes zero bytes behind a number for padding.
+        value = 0;
+        return !text.EndsWith((byte)0) && double.TryParse(text, Style, CultureInfo.InvariantCulture, out value) && double.IsFinite(value);
+    }
 }

@@ -88,7 +88,8 @@ public static class TimeParser
                 && whole <= Maximum / scale && (microseconds = whole * scale) <= Maximum;
         }
 
-        if (!decimal.TryParse(utf8, EpochStyle, CultureInfo.InvariantCulture, out decimal value)
+        // The platform's parser takes zero bytes behind a number for padding.
+        if (utf8.EndsWith((byte)0) || !decimal.TryParse(utf8, EpochStyle, CultureInfo.InvariantCulture, out decimal value)
             || decimal.Abs(value) > Maximum)
         {
             return false;
