@@ -1,4 +1,3 @@
-using System.IO.Compression;
 using System.Security.Cryptography;
 using Evenhand.Monitoring.Charters;
 using Evenhand.Monitoring.Records;
@@ -86,13 +85,13 @@ internal abstract class RecordFile : IDisposable
     {
         ReadOnlySpan<byte> head = raw.Peek(4);
         bool isGzip = head.StartsWith((ReadOnlySpan<byte>)[0x1F, 0x8B]);
-        if (!isGzip && !head.IsEmpty && name.EndsWith(".gz", StringComparison.OrdinalIgnoreCase))
+        if (!isGzip && name.EndsWith(".gz", StringComparison.OrdinalIgnoreCase))
         {
             throw new SourceException($"{name}: is named .gz but is not compressed by gzip; get the file anew, or rename it");
         }
 
         string extension = Path.GetExtension(isGzip && name.EndsWith(".gz", StringComparison.OrdinalIgnoreCase) ? name[..^3] : name).ToUpperInvariant();
-        Stream content = isGzip ? new GZipStream(raw, CompressionMode.Decompress) : raw;
+        Stream content = isGzip ? new GzipContent(raw) : raw;
         return extension switch
         {
             ".NDJSON" or ".JSONL" or ".JSON" => new JsonLinesFile(raw, content, decoding) { Name = name },
