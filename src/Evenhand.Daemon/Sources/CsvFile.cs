@@ -124,6 +124,12 @@ internal sealed class CsvFile : RecordFile
     private void Decode(RecordBatch batch)
     {
         SepReader.Row row = _reader.Current;
+        if (row.Span.Count('"') % 2 != 0)
+        {
+            RejectUnclosed(row.Span, batch);
+            return;
+        }
+
         if (row.ColCount != _columns)
         {
             batch.Reject(row.Span.IsWhiteSpace() ? RejectReason.BlankLine : RejectReason.RaggedRow, Position);
@@ -136,13 +142,6 @@ internal sealed class CsvFile : RecordFile
             return;
         }
 
-        // A quotation mark that is never closed takes the rest of the file into one row: that must not pass for a value.
-        if (row.Span.Count('"') % 2 != 0)
-        {
-            batch.Reject(RejectReason.RaggedRow, Position);
-            return;
-        }
-
         _decoder.Begin();
         foreach (int column in _decoder.Columns)
         {
@@ -150,6 +149,18 @@ internal sealed class CsvFile : RecordFile
         }
 
         _decoder.End(batch, Position);
+    }
+
+    /// <summary>A quotation mark that is never closed takes the rest of the file into one row: no rejection of a row, unless it is the last line.</summary>
+    private void RejectUnclosed(ReadOnlySpan<char> row, RecordBatch batch)
+    {
+        int further = row.TrimEnd("\r\n").Count('\n');
+        if (further > 0)
+        {
+            throw new SourceException($"{Name}: a quotation mark in row {Position + 1:N0} is never closed and takes in {further:N0} further line{(further == 1 ? "" : "s")}; close it, or double it if it belongs to the text");
+        }
+
+        batch.Reject(RejectReason.RaggedRow, Position);
     }
 
     private ReadOnlySpan<byte> Utf8(ReadOnlySpan<char> text)

@@ -33,11 +33,19 @@ internal sealed class ParquetFile : RecordFile
         }
 
         _file = unpacked is null ? RawInput.OpenFile(path, name) : Unpack(unpacked, name);
-        raw.Drain();
-        _reader = Guard(name, () => ParquetReader.CreateAsync(_file).GetAwaiter().GetResult());
-        _fields = _reader.Schema.GetDataFields();
-        _columns = new string?[_fields.Length][];
-        ColumnBinding.Bind(_decoder, [.. _fields.Select(f => f.Path.ToString())], name);
+        try
+        {
+            raw.Drain();
+            _reader = Guard(name, () => ParquetReader.CreateAsync(_file).GetAwaiter().GetResult());
+            _fields = Guard(name, () => _reader.Schema.GetDataFields());
+            _columns = new string?[_fields.Length][];
+            ColumnBinding.Bind(_decoder, [.. _fields.Select(f => f.Path.ToString())], name);
+        }
+        catch
+        {
+            _file.Dispose();
+            throw;
+        }
     }
 
     public override long? Length => _raw.Limit;
