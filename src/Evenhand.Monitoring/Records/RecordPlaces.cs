@@ -13,7 +13,7 @@ internal sealed class RecordPlaces
     {
         bool decision = kind == RecordKind.Decision;
         Id = Read("id", charter.RecordId, required: true);
-        Revision = Read("revision", charter.Revision, required: true);
+        Revision = Read("revision", charter.Revision, required: decision);
         Time = Read("time", charter.Time?.At, required: decision);
         Outcome = Read("outcome", charter.Outcome?.At, required: !decision);
         Decision = Read("decision", decision ? charter.Decision?.At : null, required: true);
