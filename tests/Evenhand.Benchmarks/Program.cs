@@ -6,15 +6,21 @@ internal static class Program
     {
         switch (args.FirstOrDefault())
         {
+            case "decode":
+                DecodeBenchmark.Run(Records(args));
+                return 0;
             case "replay":
-                ReplayBenchmark.Run(args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 1_000_000);
+                ReplayBenchmark.Run(Records(args));
                 return 0;
             case "tick":
                 TickBenchmark.Run();
                 return 0;
             default:
-                Console.Error.WriteLine("usage: replay [RECORDS] | tick");
+                Console.Error.WriteLine("usage: decode [RECORDS] | replay [RECORDS] | tick");
                 return 2;
         }
     }
+
+    private static int Records(string[] args) =>
+        args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 1_000_000;
 }

@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using Evenhand.Daemon.Replay;
 using Evenhand.Daemon.Sources;
 using Evenhand.Monitoring.Charters;
@@ -25,7 +24,7 @@ internal static class ReplayBenchmark
             Charter charter = CharterParser.Parse(charterFile, File.ReadAllBytes(charterFile)).Charter!;
             double[] seconds = Median.Seconds(
                 5,
-                () => Scan(file),
+                () => TokenScan.Count(file),
                 () => Decode(file, charter),
                 () => new ReplayRun(charter, new ReplayRequest { Charter = charterFile, Inputs = [file] }, TimeProvider.System, null).RunAlone());
             Console.WriteLine(string.Create(CultureInfo.InvariantCulture, $"{records:N0} records, {new FileInfo(file).Length / (double)records:0} bytes each"));
@@ -39,30 +38,6 @@ internal static class ReplayBenchmark
         finally
         {
             Directory.Delete(folder, recursive: true);
-        }
-    }
-
-    private static void Scan(string file)
-    {
-        using FileStream stream = new(file, FileMode.Open, FileAccess.Read, FileShare.Read, 0);
-        byte[] buffer = new byte[1 << 20];
-        int kept = 0, read;
-        while ((read = stream.Read(buffer, kept, buffer.Length - kept)) > 0)
-        {
-            ReadOnlySpan<byte> block = buffer.AsSpan(0, kept + read);
-            int end;
-            while ((end = block.IndexOf((byte)'\n')) >= 0)
-            {
-                Utf8JsonReader reader = new(block[..end]);
-                while (reader.Read())
-                {
-                }
-
-                block = block[(end + 1)..];
-            }
-
-            kept = block.Length;
-            block.CopyTo(buffer);
         }
     }
 
