@@ -10,6 +10,8 @@ namespace Evenhand.Monitoring.Records;
 /// </remarks>
 public sealed class FieldCoder
 {
+    private const int CountedBands = 16;
+
     private readonly TextTable _texts = new();
     private readonly double[]? _bands;
     private readonly bool _quantiles;
@@ -57,22 +59,22 @@ public sealed class FieldCoder
             return 0;
         }
 
-        int low = 0;
-        int high = _bands.Length;
-        while (low < high)
+        int below = 0;
+        if (_bands.Length <= CountedBands)
         {
-            int middle = (low + high) >> 1;
-            if (value >= _bands[middle])
+            // Counting takes no branch that random values would make the processor guess wrong.
+            foreach (double cut in _bands)
             {
-                low = middle + 1;
-            }
-            else
-            {
-                high = middle;
+                below = unchecked(below + (value >= cut ? 1 : 0));
             }
         }
+        else
+        {
+            int found = Array.BinarySearch(_bands, value);
+            below = found >= 0 ? found + 1 : ~found;
+        }
 
-        return low == 0 ? Unlisted : (ushort)(low - 1);
+        return below == 0 ? Unlisted : (ushort)(below - 1);
     }
 
     private void Fill(CodedField field)

@@ -129,49 +129,52 @@ public sealed class JsonRecordDecoder
     /// <returns>The position after the closing brace, or a negative reason.</returns>
     private int ReadObject(ReadOnlySpan<byte> line, PathNode node, int at, int depth)
     {
-        KeyMemory keys = node.Keys;
-        int member = KeyMemory.Start;
-        for (bool first = true; ; first = false)
+        unchecked
         {
-            at = JsonTokens.SkipSpace(line, at);
-            if ((uint)at >= (uint)line.Length)
+            KeyMemory keys = node.Keys;
+            int member = KeyMemory.Start;
+            for (bool first = true; ; first = false)
             {
-                return JsonTokens.Malformed;
-            }
-
-            if (line[at] == '}')
-            {
-                return at + 1;
-            }
-
-            if (!first)
-            {
-                if (line[at] != ',')
+                at = JsonTokens.SkipSpace(line, at);
+                if ((uint)at >= (uint)line.Length)
                 {
                     return JsonTokens.Malformed;
                 }
 
-                at++;
-            }
-
-            int next = keys.Match(member, line[at..], out int child, out int length);
-            if (next < 0)
-            {
-                length = ReadKey(line[at..], node, out child);
-                if (length < 0)
+                if (line[at] == '}')
                 {
-                    return JsonTokens.Malformed;
+                    return at + 1;
                 }
 
-                next = keys.Learn(member, line.Slice(at, length), child);
-            }
+                if (!first)
+                {
+                    if (line[at] != ',')
+                    {
+                        return JsonTokens.Malformed;
+                    }
 
-            member = next;
-            at += length;
-            at = child < 0 ? SkipValue(line, at, depth) : ReadValue(line, _nodes[child], at, depth);
-            if (at < 0)
-            {
-                return at;
+                    at++;
+                }
+
+                int next = keys.Match(member, line[at..], out int child, out int length);
+                if (next < 0)
+                {
+                    length = ReadKey(line[at..], node, out child);
+                    if (length < 0)
+                    {
+                        return JsonTokens.Malformed;
+                    }
+
+                    next = keys.Learn(member, line.Slice(at, length), child);
+                }
+
+                member = next;
+                at += length;
+                at = child < 0 ? SkipValue(line, at, depth) : ReadValue(line, _nodes[child], at, depth);
+                if (at < 0)
+                {
+                    return at;
+                }
             }
         }
     }
@@ -179,29 +182,32 @@ public sealed class JsonRecordDecoder
     /// <summary>Reads a key and its colon; gives the distance to the value.</summary>
     private int ReadKey(ReadOnlySpan<byte> rest, PathNode node, out int child)
     {
-        child = TextTable.None;
-        int start = JsonTokens.SkipSpace(rest, 0) + 1;
-        if (start > rest.Length || rest[start - 1] != '"')
+        unchecked
         {
-            return JsonTokens.Malformed;
-        }
+            child = TextTable.None;
+            int start = JsonTokens.SkipSpace(rest, 0) + 1;
+            if (start > rest.Length || rest[start - 1] != '"')
+            {
+                return JsonTokens.Malformed;
+            }
 
-        bool escaped = false;
-        int end = JsonTokens.EndOfString(rest, start, ref escaped);
-        if (end < 0)
-        {
-            return JsonTokens.Malformed;
-        }
+            bool escaped = false;
+            int end = JsonTokens.EndOfString(rest, start, ref escaped);
+            if (end < 0)
+            {
+                return JsonTokens.Malformed;
+            }
 
-        int colon = JsonTokens.SkipSpace(rest, end + 1);
-        if (colon == rest.Length || rest[colon] != ':')
-        {
-            return JsonTokens.Malformed;
-        }
+            int colon = JsonTokens.SkipSpace(rest, end + 1);
+            if (colon == rest.Length || rest[colon] != ':')
+            {
+                return JsonTokens.Malformed;
+            }
 
-        ReadOnlySpan<byte> key = rest[start..end];
-        child = escaped ? FindEscaped(node, key) : node.Names.Find(key);
-        return JsonTokens.SkipSpace(rest, colon + 1);
+            ReadOnlySpan<byte> key = rest[start..end];
+            child = escaped ? FindEscaped(node, key) : node.Names.Find(key);
+            return JsonTokens.SkipSpace(rest, colon + 1);
+        }
     }
 
     private int FindEscaped(PathNode node, ReadOnlySpan<byte> key)
@@ -214,47 +220,50 @@ public sealed class JsonRecordDecoder
     /// <summary>Reads a value that is wanted, or of which something is.</summary>
     private int ReadValue(ReadOnlySpan<byte> line, PathNode node, int at, int depth)
     {
-        if (node.SeenIn == _serial)
+        unchecked
         {
-            _duplicate = true;
-        }
-
-        node.SeenIn = _serial;
-        at = JsonTokens.SkipSpace(line, at);
-        if ((uint)at >= (uint)line.Length)
-        {
-            return JsonTokens.Malformed;
-        }
-
-        byte first = line[at];
-        if (first is (byte)'{' or (byte)'[')
-        {
-            Keep(node, ValueKind.Container, at, 0);
-            return ReadContainer(line, node, at, depth);
-        }
-
-        if (first == '"')
-        {
-            bool escaped = false;
-            int close = JsonTokens.EndOfString(line, at + 1, ref escaped);
-            if (close >= 0)
+            if (node.SeenIn == _serial)
             {
-                Keep(node, escaped ? ValueKind.EscapedText : ValueKind.Text, at + 1, close - at - 1);
-                _escaped |= escaped;
-                return close + 1;
+                _duplicate = true;
             }
 
-            return JsonTokens.Malformed;
-        }
+            node.SeenIn = _serial;
+            at = JsonTokens.SkipSpace(line, at);
+            if ((uint)at >= (uint)line.Length)
+            {
+                return JsonTokens.Malformed;
+            }
 
-        bool number = first <= '9';
-        int end = number ? JsonTokens.EndOfNumber(line, at) : JsonTokens.EndOfLiteral(line, at);
-        if (end >= 0)
-        {
-            Keep(node, number ? ValueKind.Number : first == 'n' ? ValueKind.Null : ValueKind.Literal, at, end - at);
-        }
+            byte first = line[at];
+            if (first is (byte)'{' or (byte)'[')
+            {
+                Keep(node, ValueKind.Container, at, 0);
+                return ReadContainer(line, node, at, depth);
+            }
 
-        return end;
+            if (first == '"')
+            {
+                bool escaped = false;
+                int close = JsonTokens.EndOfString(line, at + 1, ref escaped);
+                if (close >= 0)
+                {
+                    Keep(node, escaped ? ValueKind.EscapedText : ValueKind.Text, at + 1, close - at - 1);
+                    _escaped |= escaped;
+                    return close + 1;
+                }
+
+                return JsonTokens.Malformed;
+            }
+
+            bool number = first <= '9';
+            int end = number ? JsonTokens.EndOfNumber(line, at) : JsonTokens.EndOfLiteral(line, at);
+            if (end >= 0)
+            {
+                Keep(node, number ? ValueKind.Number : first == 'n' ? ValueKind.Null : ValueKind.Literal, at, end - at);
+            }
+
+            return end;
+        }
     }
 
     private void Keep(PathNode node, ValueKind kind, int start, int length)
@@ -282,73 +291,79 @@ public sealed class JsonRecordDecoder
 
     private int ReadArray(ReadOnlySpan<byte> line, PathNode? node, int at, int depth)
     {
-        int wanted = 0;
-        for (int index = 0; ; index++)
+        unchecked
         {
-            at = JsonTokens.SkipSpace(line, at);
-            if (at < line.Length && line[at] == ']' && index == 0)
+            int wanted = 0;
+            for (int index = 0; ; index++)
             {
-                return at + 1;
-            }
+                at = JsonTokens.SkipSpace(line, at);
+                if (at < line.Length && line[at] == ']' && index == 0)
+                {
+                    return at + 1;
+                }
 
-            PathNode? element = null;
-            if (node is not null && wanted < node.Elements.Count && node.Elements[wanted].Index == index)
-            {
-                element = _nodes[node.Elements[wanted++].Child];
-            }
+                PathNode? element = null;
+                if (node is not null && wanted < node.Elements.Count && node.Elements[wanted].Index == index)
+                {
+                    element = _nodes[node.Elements[wanted++].Child];
+                }
 
-            at = element is null ? SkipValue(line, at, depth) : ReadValue(line, element, at, depth);
-            if (at < 0)
-            {
-                return at;
-            }
+                at = element is null ? SkipValue(line, at, depth) : ReadValue(line, element, at, depth);
+                if (at < 0)
+                {
+                    return at;
+                }
 
-            at = JsonTokens.SkipSpace(line, at);
-            if (at >= line.Length || line[at] is not ((byte)',' or (byte)']'))
-            {
-                return JsonTokens.Malformed;
-            }
+                at = JsonTokens.SkipSpace(line, at);
+                if (at >= line.Length || line[at] is not ((byte)',' or (byte)']'))
+                {
+                    return JsonTokens.Malformed;
+                }
 
-            if (line[at++] == ']')
-            {
-                return at;
+                if (line[at++] == ']')
+                {
+                    return at;
+                }
             }
         }
     }
 
     private int SkipObject(ReadOnlySpan<byte> line, int at, int depth)
     {
-        for (bool first = true; ; first = false)
+        unchecked
         {
-            at = JsonTokens.SkipSpace(line, at);
-            if (at < line.Length && line[at] == '}' && first)
+            for (bool first = true; ; first = false)
             {
-                return at + 1;
-            }
+                at = JsonTokens.SkipSpace(line, at);
+                if (at < line.Length && line[at] == '}' && first)
+                {
+                    return at + 1;
+                }
 
-            bool escaped = false;
-            int end = at < line.Length && line[at] == '"' ? JsonTokens.EndOfString(line, at + 1, ref escaped) : JsonTokens.Malformed;
-            int colon = end < 0 ? line.Length : JsonTokens.SkipSpace(line, end + 1);
-            if (colon >= line.Length || line[colon] != ':')
-            {
-                return JsonTokens.Malformed;
-            }
+                bool escaped = false;
+                int end = at < line.Length && line[at] == '"' ? JsonTokens.EndOfString(line, at + 1, ref escaped) : JsonTokens.Malformed;
+                int colon = end < 0 ? line.Length : JsonTokens.SkipSpace(line, end + 1);
+                if (colon >= line.Length || line[colon] != ':')
+                {
+                    return JsonTokens.Malformed;
+                }
 
-            at = SkipValue(line, colon + 1, depth);
-            if (at < 0)
-            {
-                return at;
-            }
+                at = SkipValue(line, colon + 1, depth);
+                if (at < 0)
+                {
+                    return at;
+                }
 
-            at = JsonTokens.SkipSpace(line, at);
-            if (at >= line.Length || line[at] is not ((byte)',' or (byte)'}'))
-            {
-                return JsonTokens.Malformed;
-            }
+                at = JsonTokens.SkipSpace(line, at);
+                if (at >= line.Length || line[at] is not ((byte)',' or (byte)'}'))
+                {
+                    return JsonTokens.Malformed;
+                }
 
-            if (line[at++] == '}')
-            {
-                return at;
+                if (line[at++] == '}')
+                {
+                    return at;
+                }
             }
         }
     }
@@ -356,31 +371,34 @@ public sealed class JsonRecordDecoder
     /// <summary>Checks a value of which nothing is wanted.</summary>
     private int SkipValue(ReadOnlySpan<byte> line, int at, int depth)
     {
-        at = JsonTokens.SkipSpace(line, at);
-        if ((uint)at >= (uint)line.Length)
+        unchecked
         {
-            return JsonTokens.Malformed;
-        }
-
-        byte first = line[at];
-        if (first == '"')
-        {
-            bool escaped = false;
-            int close = JsonTokens.EndOfString(line, at + 1, ref escaped);
-            return close < 0 ? close : close + 1;
-        }
-
-        if (first is (byte)'{' or (byte)'[')
-        {
-            if (depth == MaximumDepth)
+            at = JsonTokens.SkipSpace(line, at);
+            if ((uint)at >= (uint)line.Length)
             {
-                return TooDeep;
+                return JsonTokens.Malformed;
             }
 
-            return first == '{' ? SkipObject(line, at + 1, depth + 1) : ReadArray(line, null, at + 1, depth + 1);
-        }
+            byte first = line[at];
+            if (first == '"')
+            {
+                bool escaped = false;
+                int close = JsonTokens.EndOfString(line, at + 1, ref escaped);
+                return close < 0 ? close : close + 1;
+            }
 
-        return first <= '9' ? JsonTokens.EndOfNumber(line, at) : JsonTokens.EndOfLiteral(line, at);
+            if (first is (byte)'{' or (byte)'[')
+            {
+                if (depth == MaximumDepth)
+                {
+                    return TooDeep;
+                }
+
+                return first == '{' ? SkipObject(line, at + 1, depth + 1) : ReadArray(line, null, at + 1, depth + 1);
+            }
+
+            return first <= '9' ? JsonTokens.EndOfNumber(line, at) : JsonTokens.EndOfLiteral(line, at);
+        }
     }
 
     /// <summary>Replaces the escaped values by their texts, in a copy of the line that the texts follow.</summary>

@@ -1,3 +1,6 @@
+using System.Buffers.Binary;
+using System.Runtime.CompilerServices;
+
 namespace Evenhand.Monitoring.Records;
 
 /// <summary>
@@ -22,7 +25,9 @@ internal sealed class KeyMemory
     // An object whose keys are ever new, such as a map by id, would be learnt for nothing.
     private const int MaximumForgotten = 16;
 
-    private Member[] _members = [new Member(), new Member()];
+    private const int WordBytes = 8;
+
+    private Member[] _members = new Member[2];
     private int _count = 1;
     private int _forgotten;
 
@@ -35,11 +40,11 @@ internal sealed class KeyMemory
     public int Match(int after, ReadOnlySpan<byte> rest, out int node, out int length)
     {
         Member[] members = _members;
-        Member before = members[after];
+        ref Member before = ref members[after];
         int first = before.First;
         if (first > 0)
         {
-            Member member = members[first];
+            ref Member member = ref members[first];
             if (member.Stands(rest))
             {
                 node = member.Node;
@@ -47,13 +52,13 @@ internal sealed class KeyMemory
                 return first;
             }
 
-            if (before.Second > 0 && members[before.Second].Stands(rest))
+            int second = before.Second;
+            if (second > 0 && members[second].Stands(rest))
             {
-                (before.First, before.Second) = (before.Second, first);
-                member = members[before.First];
-                node = member.Node;
-                length = member.Text.Length;
-                return before.First;
+                (before.First, before.Second) = (second, first);
+                node = members[second].Node;
+                length = members[second].Text.Length;
+                return second;
             }
         }
 
@@ -83,7 +88,7 @@ internal sealed class KeyMemory
             member = Add(text, node);
         }
 
-        Member before = _members[after];
+        ref Member before = ref _members[after];
         if (before.First != member)
         {
             (before.First, before.Second) = (member, before.First);
@@ -96,8 +101,7 @@ internal sealed class KeyMemory
     {
         for (int i = 1; i < _count; i++)
         {
-            Member member = _members[i];
-            if (member.Text.Length == text.Length && member.Stands(text))
+            if (text.SequenceEqual(_members[i].Text))
             {
                 return i;
             }
@@ -113,7 +117,7 @@ internal sealed class KeyMemory
             Array.Resize(ref _members, Math.Min(MaximumMembers, _members.Length * 2));
         }
 
-        _members[_count] = new Member { Text = text.ToArray(), Node = node };
+        _members[_count] = new Member(text.ToArray(), node);
         return _count++;
     }
 
@@ -121,20 +125,38 @@ internal sealed class KeyMemory
     {
         _forgotten++;
         _count = 1;
-        _members[Start] = new Member();
+        _members[Start] = default;
     }
 
-    private sealed class Member
+    /// <summary>A member's text, whose first sixteen bytes are also kept as two words: most keys are compared without a loop or a call.</summary>
+    private struct Member(byte[] text, int node)
     {
-        public byte[] Text { get; init; } = [];
+        private readonly ulong _low = Packed.Prefix(text);
+        private readonly ulong _lowMask = Mask(text.Length);
+        private readonly ulong _high = text.Length > WordBytes ? Packed.Prefix(text.AsSpan(WordBytes)) : 0;
+        private readonly ulong _highMask = text.Length > WordBytes ? Mask(text.Length - WordBytes) : 0;
 
-        public int Node { get; init; } = -1;
+        public readonly byte[] Text = text;
 
-        public int First { get; set; }
+        public readonly int Node = node;
 
-        public int Second { get; set; }
+        public int First;
 
-        public bool Stands(ReadOnlySpan<byte> rest) =>
-            rest.Length >= Text.Length && rest[..Text.Length].SequenceEqual(Text);
+        public int Second;
+
+        [MethodImpl(MethodImplOptions.AggressiveInlining)]
+        public readonly bool Stands(ReadOnlySpan<byte> rest)
+        {
+            if (rest.Length < 2 * WordBytes)
+            {
+                return rest.StartsWith(Text);
+            }
+
+            ulong difference = ((BinaryPrimitives.ReadUInt64LittleEndian(rest) ^ _low) & _lowMask)
+                | ((BinaryPrimitives.ReadUInt64LittleEndian(rest[WordBytes..]) ^ _high) & _highMask);
+            return difference == 0 && (Text.Length <= 2 * WordBytes || rest.StartsWith(Text));
+        }
+
+        private static ulong Mask(int length) => length >= WordBytes ? ulong.MaxValue : (1UL << (length * 8)) - 1;
     }
 }

@@ -240,35 +240,41 @@ internal sealed class RecordEncoder
 
     private void EncodeFields(ReadOnlySpan<byte> bytes, ReadOnlySpan<RecordValue> values, Span<ushort> codes)
     {
-        PlaceRange[] ranges = _places.Fields;
-        FieldCoder[] coders = _coders;
-        for (int field = 0; field < codes.Length; field++)
+        unchecked
         {
-            FieldCoder coder = coders[field];
-            RecordValue value = Find(values, ranges[field]);
-            codes[field] = value.Kind switch
+            PlaceRange[] ranges = _places.Fields;
+            FieldCoder[] coders = _coders;
+            for (int field = 0; field < codes.Length; field++)
             {
-                ValueKind.Absent or ValueKind.Null => coder.Missing,
-                ValueKind.Container => coder.Unlisted,
-                _ => coder.Code(value.Of(bytes)),
-            };
+                FieldCoder coder = coders[field];
+                RecordValue value = Find(values, ranges[field]);
+                codes[field] = value.Kind switch
+                {
+                    ValueKind.Absent or ValueKind.Null => coder.Missing,
+                    ValueKind.Container => coder.Unlisted,
+                    _ => coder.Code(value.Of(bytes)),
+                };
+            }
         }
     }
 
     /// <summary>The first present value among a field's places; default where there is none.</summary>
     private RecordValue Find(ReadOnlySpan<RecordValue> values, PlaceRange range)
     {
-        int[] order = _order;
-        int end = range.From + range.Count;
-        for (int i = range.From; i < end; i++)
+        unchecked
         {
-            RecordValue value = values[order[i]];
-            if (value.IsPresent)
+            int[] order = _order;
+            int end = range.From + range.Count;
+            for (int i = range.From; i < end; i++)
             {
-                return value;
+                RecordValue value = values[order[i]];
+                if (value.IsPresent)
+                {
+                    return value;
+                }
             }
-        }
 
-        return default;
+            return default;
+        }
     }
 }

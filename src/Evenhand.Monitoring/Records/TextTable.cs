@@ -9,7 +9,7 @@ internal sealed class TextTable
     /// <summary>The answer for a text that is not in the table.</summary>
     public const int None = -1;
 
-    private const int LinearLimit = 6;
+    private const int LinearLimit = 1;
 
     private readonly List<Entry> _filling = [];
     private Entry[] _entries = [];

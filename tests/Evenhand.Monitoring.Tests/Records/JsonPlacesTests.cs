@@ -43,6 +43,12 @@ public sealed class JsonPlacesTests
         Assert.Equal(reason, Decode(Start + "," + rest[1..]).Rejected[0]);
 
     [Fact]
+    public void Decode_NullRevision_IsNoRevision() =>
+        Assert.Equal(
+            Decode(Start.Replace("\"n\":1,", "", StringComparison.Ordinal) + "}").Ids[0],
+            Decode(Start.Replace("\"n\":1,", "\"n\":null,", StringComparison.Ordinal) + "}").Ids[0]);
+
+    [Fact]
     public void Decode_RecordOfTheGreatestLength_IsTakenAndOneByteMoreIsNot()
     {
         string end = "\"}";
