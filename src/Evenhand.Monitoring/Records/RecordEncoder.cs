@@ -11,6 +11,9 @@ internal sealed class RecordEncoder
     private readonly RecordKind _kind;
     private readonly TimeUnit _unit;
     private readonly FieldCoder[] _coders;
+
+    // The slot of a coded field that stands at one place alone, as nearly all do; −1 for others. Null needs no search there.
+    private readonly int[] _onlySlots;
     private readonly ScoreField? _score;
     private readonly TextTable _decisions = new();
     private readonly TextTable _outcomes = new();
@@ -31,6 +34,7 @@ internal sealed class RecordEncoder
         _kind = kind;
         _unit = charter.Time?.Unit ?? TimeUnit.Rfc3339;
         _coders = [.. layout.Fields.Select(field => new FieldCoder(field))];
+        _onlySlots = [.. _places.Fields.Select(range => range.Count == 1 ? _order[range.From] : -1)];
         _score = charter.Score;
         Fill(_decisions, charter.Decision?.Favourable, (int)DecisionCode.Favourable);
         Fill(_decisions, charter.Decision?.Unfavourable, (int)DecisionCode.Unfavourable);
@@ -243,11 +247,13 @@ internal sealed class RecordEncoder
         unchecked
         {
             PlaceRange[] ranges = _places.Fields;
+            int[] onlySlots = _onlySlots;
             FieldCoder[] coders = _coders;
             for (int field = 0; field < codes.Length; field++)
             {
                 FieldCoder coder = coders[field];
-                RecordValue value = Find(values, ranges[field]);
+                int only = onlySlots[field];
+                RecordValue value = only >= 0 ? values[only] : Find(values, ranges[field]);
                 codes[field] = value.Kind switch
                 {
                     ValueKind.Absent or ValueKind.Null => coder.Missing,
