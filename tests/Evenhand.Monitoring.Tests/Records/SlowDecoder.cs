@@ -1,13 +1,14 @@
 using System.Globalization;
 using System.Text;
 using System.Text.Json;
+using System.Text.RegularExpressions;
 using Evenhand.Monitoring.Charters;
 using Evenhand.Monitoring.Records;
 
 namespace Evenhand.Monitoring.Tests.Records;
 
 /// <summary>Decodes a line by the rules as they are written down, on the platform's document model, with no eye to speed.</summary>
-internal static class SlowDecoder
+internal static partial class SlowDecoder
 {
     private static readonly UTF8Encoding Strict = new(encoderShouldEmitUTF8Identifier: false, throwOnInvalidBytes: true);
 
@@ -99,8 +100,7 @@ internal static class SlowDecoder
             return DecodedRecord.Rejected(RejectReason.MissingTime);
         }
 
-        if (!DateTimeOffset.TryParseExact(Text(time), "yyyy-MM-dd'T'HH:mm:ssK", CultureInfo.InvariantCulture, DateTimeStyles.AssumeUniversal, out DateTimeOffset moment)
-            || !(Text(time)!.EndsWith('Z') || Text(time)![^6] is '+' or '-'))
+        if (Microseconds(Text(time)!) is not { } moment)
         {
             return DecodedRecord.Rejected(RejectReason.BadTime);
         }
@@ -126,7 +126,7 @@ internal static class SlowDecoder
             RejectReason.None,
             hasher.Hash([.. key, IdHasher.Separator, .. Encoding.UTF8.GetBytes(Text(revision) ?? "")]),
             hasher.Hash([.. key, IdHasher.Separator]),
-            (moment.UtcTicks - DateTime.UnixEpoch.Ticks) / 10,
+            moment,
             code.Value,
             charter.Outcome.Positive.Contains(outcome) ? OutcomeCode.Positive : charter.Outcome.Negative.Contains(outcome) ? OutcomeCode.Negative : OutcomeCode.Unknown,
             Score(First(root, charter.Score!.At), charter.Score),
@@ -261,6 +261,42 @@ internal static class SlowDecoder
             return null;
         }
     }
+
+    /// <summary>
+    /// The grammar of RFC 3339, section 5.6: T and Z in either case, and a space for the T, which its note allows; an offset of at
+    /// most 23:59. A leap second, "23:59:60", is not drawn by these tests: TimeParserTests has it.
+    /// </summary>
+    private static long? Microseconds(string text)
+    {
+        Match match = Rfc3339().Match(text);
+        if (!match.Success || !DateTime.TryParseExact(
+            $"{match.Groups[1].Value}T{match.Groups[2].Value}", "yyyy-MM-dd'T'HH:mm:ss", CultureInfo.InvariantCulture, DateTimeStyles.None, out DateTime local))
+        {
+            return null;
+        }
+
+        string fraction = match.Groups[3].Value.PadRight(6, '0')[..6];
+        string zone = match.Groups[4].Value;
+        long offset = 0;
+        if (zone.Length > 1)
+        {
+            int hours = int.Parse(zone[1..3], CultureInfo.InvariantCulture), minutes = int.Parse(zone[4..], CultureInfo.InvariantCulture);
+            if (hours > 23 || minutes > 59)
+            {
+                return null;
+            }
+
+            offset = (zone[0] == '-' ? -1 : 1) * ((hours * 60L) + minutes) * TimeSpan.TicksPerMinute;
+        }
+
+        long ticks = local.Ticks - offset;
+        return ticks < DateTime.MinValue.Ticks || ticks > DateTime.MaxValue.Ticks
+            ? null
+            : ((ticks - DateTime.UnixEpoch.Ticks) / 10) + int.Parse(fraction, CultureInfo.InvariantCulture);
+    }
+
+    [GeneratedRegex("\\A([0-9]{4}-[0-9]{2}-[0-9]{2})[Tt ]([0-9]{2}:[0-9]{2}:[0-9]{2})(?:\\.([0-9]+))?([Zz]|[+-][0-9]{2}:[0-9]{2})\\z", RegexOptions.CultureInvariant)]
+    private static partial Regex Rfc3339();
 
     // RFC 6901, section 4: first ~1, then ~0.
     private static string[] Tokens(string place) => place.StartsWith('/')
