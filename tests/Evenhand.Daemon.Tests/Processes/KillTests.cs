@@ -20,8 +20,8 @@ public sealed class KillTests : IDisposable
     {
         WriteCharter();
         WriteRecords();
-        (int exitCode, _, string error) = EvenhandProcess.Run(Arguments("undisturbed.json", store: null));
-        Assert.True(exitCode == 0, error);
+        ProgramRun undisturbed = ProgramRun.Of(Arguments("undisturbed.json", store: null));
+        Assert.True(undisturbed.ExitCode == 0, undisturbed.Error);
         byte[] expected = File.ReadAllBytes(At("undisturbed.json"));
 
         Random random = new(20311130);
