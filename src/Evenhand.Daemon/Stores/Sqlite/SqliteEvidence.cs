@@ -36,6 +36,8 @@ internal class SqliteEvidence : IEvidenceStore
             SqliteConnection connection = SqliteConnections.Reader(file);
             try
             {
+                // One view for as long as it is open: a snapshot that is appended meanwhile must not look like a broken chain.
+                connection.BeginTransaction(deferred: true);
                 SqliteSchema.RefuseNewer(connection, file);
                 return connection.ExecuteScalar<long>("SELECT count(*) FROM sqlite_master WHERE name = 'snapshot'") == 0
                     ? throw new StoreException($"store sqlite:{file}: holds no chain; check the name")
