@@ -20,7 +20,7 @@ internal class SqliteEvidence : IEvidenceStore
     protected string File { get; }
 
     /// <summary>The connection.</summary>
-    protected SqliteConnection Connection { get; }
+    protected internal SqliteConnection Connection { get; }
 
     /// <summary>Opens a store for reading.</summary>
     /// <exception cref="StoreException">There is none, or it cannot be read.</exception>
