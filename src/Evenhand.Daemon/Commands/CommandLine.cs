@@ -1,4 +1,5 @@
 using System.CommandLine;
+using System.CommandLine.Parsing;
 using Evenhand.Daemon.Hosting;
 using Evenhand.Daemon.Sources;
 using Evenhand.Daemon.Stores;
@@ -32,8 +33,7 @@ internal sealed partial class CommandLine(IServiceProvider services)
         ParseResult parsed = Root().Parse(args);
         if (parsed.Errors.Count > 0 && parsed.Action is not System.CommandLine.Help.HelpAction)
         {
-            string command = parsed.CommandResult.Command is RootCommand ? "evenhand" : $"evenhand {parsed.CommandResult.Command.Name}";
-            return Fail(2, $"{parsed.Errors[0].Message.TrimEnd('.')}; see {command} --help");
+            return Fail(2, $"{parsed.Errors[0].Message.TrimEnd('.')}; see {PathOf(parsed.CommandResult)} --help");
         }
 
         try
@@ -46,6 +46,9 @@ internal sealed partial class CommandLine(IServiceProvider services)
             return Fail(e);
         }
     }
+
+    private static string PathOf(CommandResult command) =>
+        command.Command is RootCommand ? "evenhand" : command.Parent is CommandResult above ? $"{PathOf(above)} {command.Command.Name}" : command.Command.Name;
 
     private int Fail(Exception e) => e switch
     {
