@@ -12,7 +12,8 @@ public sealed class ShippedSchema
     private readonly JsonSchema _schema;
 
     /// <summary>Reads a schema.</summary>
-    public ShippedSchema(string text) => _schema = JsonSchema.FromText(text);
+    public ShippedSchema(string text) =>
+        _schema = JsonSchema.FromText(text, new BuildOptions { SchemaRegistry = new SchemaRegistry() }); // else a schema could be read only once
 
     /// <summary>What is wrong with a document, a line each: where, and why; empty where it is valid.</summary>
     public string Errors(JsonNode? document)

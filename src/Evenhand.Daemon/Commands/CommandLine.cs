@@ -33,7 +33,9 @@ internal sealed partial class CommandLine(IServiceProvider services)
         ParseResult parsed = Root().Parse(args);
         if (parsed.Errors.Count > 0 && parsed.Action is not System.CommandLine.Help.HelpAction)
         {
-            return Fail(2, $"{parsed.Errors[0].Message.TrimEnd('.')}; see {PathOf(parsed.CommandResult)} --help");
+            // Where only some words are allowed, the parser's message lists them one a line.
+            string message = string.Join(' ', parsed.Errors[0].Message.Split((char[]?)null, StringSplitOptions.RemoveEmptyEntries));
+            return Fail(2, $"{message.TrimEnd('.')}; see {PathOf(parsed.CommandResult)} --help");
         }
 
         try

@@ -1,3 +1,5 @@
+using System.Text.Json.Serialization;
+
 namespace Evenhand.Monitoring.Windows;
 
 /// <summary>What became of the records of a shard: every record read stands in exactly one of the other counts.</summary>
@@ -40,5 +42,6 @@ public sealed class ShardCounts
     public long OutcomesOutside { get; set; }
 
     /// <summary>Whether every record read stands in exactly one count.</summary>
+    [JsonIgnore]
     public bool AddUp => Read == Used + Other + Rejected + Late + Ahead + Duplicate + Held + Excluded;
 }
