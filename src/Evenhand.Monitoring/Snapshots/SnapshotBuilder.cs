@@ -22,8 +22,9 @@ public static class SnapshotBuilder
     {
         ArgumentNullException.ThrowIfNull(content);
         TickResult tick = content.Tick;
-        WithheldCells withheld = DisclosurePlanner.Plan(content.Layout, tick.Sums);
-        JsonObject state = new StateWriter(withheld).Write(tick.Sums.Concat(tick.Baselines.Select(Named)));
+        WindowSums[] windows = [.. tick.Sums, .. tick.Baselines.Select(Named)];
+        WithheldCells withheld = DisclosurePlanner.Plan(content.Layout, windows);
+        JsonObject state = new StateWriter(withheld).Write(windows);
         JsonArray rules = RulesJson.Write(tick.Judgements, withheld);
         JsonArray alerts = RulesJson.WriteOpen(content.Layout.Charter, tick, withheld);
         withheld.Apply(tick.Readings);

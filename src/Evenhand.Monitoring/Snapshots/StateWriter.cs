@@ -56,6 +56,11 @@ public sealed class StateWriter(WithheldCells withheld)
             {
                 grouping["reference"] = new JsonArray([.. shape.Labels(reference.Index).Select(l => (JsonNode)l)]);
             }
+
+            if (withheld.Contains(sums.Window, sums.Slice, shape.Name, WithheldCells.WholeGrouping, WithheldPart.KnownShare))
+            {
+                grouping["known_share"] = null;
+            }
         }
 
         return grouping;
@@ -91,7 +96,8 @@ public sealed class StateWriter(WithheldCells withheld)
     private void AddOutcomes(JsonObject written, WindowSums sums, GroupingShape shape, int cell)
     {
         CellCounts c = sums.Counts(shape, cell);
-        bool isSplit = IsEnough(c.Positive) && IsEnough(c.Negative) && IsEnough(c.FavourablePositive + c.FavourableNegative);
+        bool isKnown = !withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Outcomes);
+        bool isSplit = isKnown && IsEnough(c.Positive) && IsEnough(c.Negative) && IsEnough(c.FavourablePositive + c.FavourableNegative);
         if (sums.Layout.Charter.Outcome is not null)
         {
             written["outcomes"] = isSplit
@@ -111,7 +117,8 @@ public sealed class StateWriter(WithheldCells withheld)
             scores = [scores.Aggregate((a, b) => (a.Count + b.Count, a.Sum + b.Sum, a.Squares + b.Squares))];
         }
 
-        written["scores"] = scores.Length == 1 && !IsEnough(scores[0].Count)
+        bool isScored = !withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Scores);
+        written["scores"] = !isScored || (scores.Length == 1 && !IsEnough(scores[0].Count))
             ? null
             : new JsonArray([.. scores.Select(s => (JsonNode)new JsonArray(CanonicalJson.Integer(s.Count), s.Sum.ToString(), s.Squares.ToString()))]);
     }
@@ -137,10 +144,17 @@ public sealed class StateWriter(WithheldCells withheld)
         }
     }
 
+    /// <summary>The strata of a cell, or null where one of them would stand for too few records or would give another cell away.</summary>
     private void AddStrata(JsonObject written, WindowSums sums, GroupingShape shape, int cell)
     {
         if (shape.StrataAt < 0)
         {
+            return;
+        }
+
+        if (withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Strata))
+        {
+            written["strata"] = null;
             return;
         }
 
@@ -150,9 +164,7 @@ public sealed class StateWriter(WithheldCells withheld)
             long unfavourable = sums.InStratum(shape, cell, s, 0), favourable = sums.InStratum(shape, cell, s, 1);
             if (unfavourable + favourable > 0)
             {
-                strata.Add(IsEnough(unfavourable + favourable)
-                    ? Numbers(s, favourable, unfavourable)
-                    : new JsonArray(CanonicalJson.Integer(s), null, null));
+                strata.Add(Numbers(s, favourable, unfavourable));
             }
         }
 
