@@ -12,11 +12,14 @@ internal static class Program
             case "replay":
                 ReplayBenchmark.Run(Records(args));
                 return 0;
+            case "snapshot":
+                SnapshotBenchmark.Run(args.Length > 1 ? Records(args) : 1_000);
+                return 0;
             case "tick":
                 TickBenchmark.Run();
                 return 0;
             default:
-                Console.Error.WriteLine("usage: decode [RECORDS] | replay [RECORDS] | tick");
+                Console.Error.WriteLine("usage: decode [RECORDS] | replay [RECORDS] | snapshot [RECORDS] | tick");
                 return 2;
         }
     }

@@ -24,11 +24,12 @@ public static class SnapshotBuilder
         TickResult tick = content.Tick;
         WindowSums[] windows = [.. tick.Sums, .. tick.Baselines.Select(Named)];
         WithheldCells withheld = DisclosurePlanner.Plan(content.Layout, windows);
-        JsonObject state = new StateWriter(withheld).Write(windows);
+        StateWriter writer = new(withheld);
+        JsonObject state = writer.Write(windows);
         JsonArray rules = RulesJson.Write(tick.Judgements, withheld);
         JsonArray alerts = RulesJson.WriteOpen(content.Layout.Charter, tick, withheld);
         withheld.Apply(tick.Readings);
-        Recomputation.NoteWhatRestsOnWithheld(content.Layout, state, tick.Readings);
+        Recomputation.NoteWhatRestsOnWithheld(content.Layout, state, writer.Incomplete, tick.Readings);
         return new JsonObject
         {
             ["format"] = "evenhand-snapshot/1",

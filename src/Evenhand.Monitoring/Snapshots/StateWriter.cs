@@ -15,6 +15,12 @@ public sealed class StateWriter(WithheldCells withheld)
     /// <summary>The format's name and version.</summary>
     public const string Format = "evenhand-state/1";
 
+    private readonly HashSet<string> _incomplete = [];
+    private string _window = "";
+
+    /// <summary>The windows of which something was left out, baselines under their own names.</summary>
+    public IReadOnlySet<string> Incomplete => _incomplete;
+
     /// <summary>The state of some windows.</summary>
     public JsonObject Write(IEnumerable<WindowSums> windows) => new()
     {
@@ -24,6 +30,7 @@ public sealed class StateWriter(WithheldCells withheld)
 
     private JsonObject Window(WindowSums sums)
     {
+        _window = sums.Window;
         JsonObject window = new() { ["window"] = sums.Window };
         if (sums.Slice is not null)
         {
@@ -59,7 +66,7 @@ public sealed class StateWriter(WithheldCells withheld)
 
             if (withheld.Contains(sums.Window, sums.Slice, shape.Name, WithheldCells.WholeGrouping, WithheldPart.KnownShare))
             {
-                grouping["known_share"] = null;
+                grouping["known_share"] = LeaveOut();
             }
         }
 
@@ -79,7 +86,7 @@ public sealed class StateWriter(WithheldCells withheld)
         JsonObject written = new() { ["cell"] = new JsonArray([.. shape.Labels(cell).Select(l => (JsonNode)l)]) };
         if (isPlanned || records < withheld.Minimum)
         {
-            written["withheld"] = true;
+            written["withheld"] = LeaveOut(true);
             return written;
         }
 
@@ -102,7 +109,7 @@ public sealed class StateWriter(WithheldCells withheld)
         {
             written["outcomes"] = isSplit
                 ? Numbers(c.Positive - c.FavourablePositive, c.Negative - c.FavourableNegative, c.FavourablePositive, c.FavourableNegative)
-                : null;
+                : LeaveOut();
         }
 
         if (shape.ScoresAt < 0)
@@ -114,12 +121,13 @@ public sealed class StateWriter(WithheldCells withheld)
             [.. Enum.GetValues<OutcomeCode>().Select(o => sums.Scores(shape, cell, o))];
         if (!isSplit || scores.Any(s => !IsEnough(s.Count)))
         {
+            LeaveOut();
             scores = [scores.Aggregate((a, b) => (a.Count + b.Count, a.Sum + b.Sum, a.Squares + b.Squares))];
         }
 
         bool isScored = !withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Scores);
         written["scores"] = !isScored || (scores.Length == 1 && !IsEnough(scores[0].Count))
-            ? null
+            ? LeaveOut()
             : new JsonArray([.. scores.Select(s => (JsonNode)new JsonArray(CanonicalJson.Integer(s.Count), s.Sum.ToString(), s.Squares.ToString()))]);
     }
 
@@ -154,7 +162,7 @@ public sealed class StateWriter(WithheldCells withheld)
 
         if (withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Strata))
         {
-            written["strata"] = null;
+            written["strata"] = LeaveOut();
             return;
         }
 
@@ -169,6 +177,12 @@ public sealed class StateWriter(WithheldCells withheld)
         }
 
         written["strata"] = strata;
+    }
+
+    private JsonNode? LeaveOut(bool? mark = null)
+    {
+        _incomplete.Add(_window);
+        return mark;
     }
 
     private bool IsEnough(long count) => count == 0 || count >= withheld.Minimum;

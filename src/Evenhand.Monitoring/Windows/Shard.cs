@@ -12,6 +12,8 @@ namespace Evenhand.Monitoring.Windows;
 /// </remarks>
 public sealed class Shard
 {
+    private const int WarmLength = 64;
+
     private readonly SumLayout _layout;
     private readonly ShardOptions _options;
     private readonly OutcomeIndex? _outcomes;
@@ -92,6 +94,11 @@ public sealed class Shard
         ArgumentNullException.ThrowIfNull(batch);
         for (int i = 0; i < batch.Count; i++)
         {
+            if (i % WarmLength == 0)
+            {
+                _ids?.Warm(batch.Ids.AsSpan(i, Math.Min(WarmLength, batch.Count - i)));
+            }
+
             _counts.Read++;
             AddEntry(batch, i, input);
             _nextOffsets[input] = batch.Positions[i] + 1;
