@@ -9,6 +9,9 @@ internal static class Program
             case "decode":
                 DecodeBenchmark.Run(Records(args));
                 return 0;
+            case "circuit":
+                CircuitBenchmark.Run();
+                return 0;
             case "density":
                 DensityBenchmark.Run(args.Length > 1 ? Records(args) : 16);
                 return 0;
@@ -22,7 +25,7 @@ internal static class Program
                 TickBenchmark.Run();
                 return 0;
             default:
-                Console.Error.WriteLine("usage: decode [RECORDS] | density [PROFILES] | replay [RECORDS] | snapshot [RECORDS] | tick");
+                Console.Error.WriteLine("usage: circuit | decode [RECORDS] | density [PROFILES] | replay [RECORDS] | snapshot [RECORDS] | tick");
                 return 2;
         }
     }

@@ -12,8 +12,6 @@ namespace Evenhand.Circuits.Learning;
 /// </remarks>
 public sealed class ProfileLearner
 {
-    private const int BlockRecords = 256;
-
     private readonly TrainingTable _sample;
     private readonly TrainingTable _heldOut;
     private readonly LearningOptions _options;
@@ -44,8 +42,7 @@ public sealed class ProfileLearner
         ProfileShape shape = new(_options.Profiles, _sample.Groups, _sample.Decision, _sample.Fields, parents ?? Tree(_sample));
         ProfilePrior prior = new(shape, _options.Pseudo, _margins, null);
         ProfileParameters parameters = prior.Likeliest(Start(shape));
-        ProfileEngine<double, DoubleArithmetic> engine = new(shape, parameters);
-        Search search = new(this, shape, engine, parameters);
+        Search search = new(this, shape, parameters);
         search.MiniBatches();
         search.FullBatches();
         return new LearnedProfile(new ProfileCircuit(shape, search.Best), search.BestLikelihood);
@@ -77,22 +74,7 @@ public sealed class ProfileLearner
     {
         ArgumentNullException.ThrowIfNull(circuit);
         ArgumentNullException.ThrowIfNull(table);
-        ProfileEngine<double, DoubleArithmetic> engine = new(circuit.Shape, circuit.Parameters);
-        return MeanLogLikelihood(engine, circuit.Shape, table);
-    }
-
-    private static double MeanLogLikelihood(ProfileEngine<double, DoubleArithmetic> engine, ProfileShape shape, TrainingTable table)
-    {
-        ProfileBlock<double> block = engine.NewBlock(BlockRecords);
-        double sum = 0;
-        foreach (int[] rows in Enumerable.Range(0, table.Records).Chunk(BlockRecords))
-        {
-            table.Fill(block, shape, rows);
-            engine.Up(block);
-            sum += block.LogLikelihood.AsSpan(0, block.Count).ToArray().Sum();
-        }
-
-        return sum / table.Records;
+        return new ExpectationStep(circuit.Shape, circuit.Parameters).MeanLogLikelihood(table);
     }
 
     private static double Tells(TrainingTable sample, ushort[] column, int states)
@@ -160,18 +142,14 @@ public sealed class ProfileLearner
     {
         private readonly ProfileLearner _learner;
         private readonly ProfileShape _shape;
-        private readonly ProfileEngine<double, DoubleArithmetic> _engine;
-        private readonly ProfileBlock<double> _block;
-        private readonly ProfileFlows<double> _flows;
-        private ProfileParameters _current;
+        private readonly ExpectationStep _step;
 
-        public Search(ProfileLearner learner, ProfileShape shape, ProfileEngine<double, DoubleArithmetic> engine, ProfileParameters start)
+        public Search(ProfileLearner learner, ProfileShape shape, ProfileParameters start)
         {
-            (_learner, _shape, _engine, _current) = (learner, shape, engine, start);
-            _block = engine.NewBlock(BlockRecords);
-            _flows = engine.NewFlows();
+            (_learner, _shape) = (learner, shape);
+            _step = new ExpectationStep(shape, start);
             Best = start;
-            BestLikelihood = MeanLogLikelihood(engine, shape, learner._heldOut);
+            BestLikelihood = _step.MeanLogLikelihood(learner._heldOut);
         }
 
         public ProfileParameters Best { get; private set; }
@@ -194,9 +172,9 @@ public sealed class ProfileLearner
                 foreach (int[] rows in order.Chunk(options.BatchRecords))
                 {
                     batch.Clear();
-                    AddFlows(batch, sample, rows);
+                    _step.Add(sample, rows, batch);
                     running.Blend(batch, rows.Length == options.BatchRecords ? share : share * rows.Length / options.BatchRecords, sample.Records);
-                    Take(new ProfilePrior(_shape, options.Pseudo, _learner._margins, running).Likeliest(running));
+                    _step.Take(new ProfilePrior(_shape, options.Pseudo, _learner._margins, running).Likeliest(running));
                 }
 
                 stale = IsBetter() ? 0 : stale + 1;
@@ -208,13 +186,17 @@ public sealed class ProfileLearner
         {
             LearningOptions options = _learner._options;
             ProfileStatistics all = new(_shape);
+            ProfilePrior? prior = null;
             int[] rows = [.. Enumerable.Range(0, _learner._sample.Records)];
-            Take(Best);
+            _step.Take(Best);
             for (int step = 0; step < options.MostSteps; step++)
             {
                 all.Clear();
-                AddFlows(all, _learner._sample, rows);
-                Take(new ProfilePrior(_shape, options.Pseudo, _learner._margins, all).Likeliest(all));
+                _step.Add(_learner._sample, rows, all);
+
+                // The prior is held from the first step on: only then is each step sure to climb.
+                prior ??= new ProfilePrior(_shape, options.Pseudo, _learner._margins, all);
+                _step.Take(prior.Likeliest(all));
                 double before = BestLikelihood;
                 if (!IsBetter() || BestLikelihood - before < 1e-5)
                 {
@@ -225,34 +207,15 @@ public sealed class ProfileLearner
             _learner._progress?.Invoke(1);
         }
 
-        private void AddFlows(ProfileStatistics into, TrainingTable table, int[] rows)
-        {
-            _flows.Clear();
-            for (int from = 0; from < rows.Length; from += BlockRecords)
-            {
-                table.Fill(_block, _shape, rows.AsSpan(from, Math.Min(BlockRecords, rows.Length - from)));
-                _engine.Up(_block);
-                _engine.Down(_block, _flows);
-            }
-
-            into.Add(_flows, _current);
-        }
-
-        private void Take(ProfileParameters parameters)
-        {
-            _current = parameters;
-            _engine.Set(parameters);
-        }
-
         private bool IsBetter()
         {
-            double likelihood = MeanLogLikelihood(_engine, _shape, _learner._heldOut);
+            double likelihood = _step.MeanLogLikelihood(_learner._heldOut);
             if (!(likelihood > BestLikelihood))
             {
                 return false;
             }
 
-            (Best, BestLikelihood) = (_current, likelihood);
+            (Best, BestLikelihood) = (_step.Parameters, likelihood);
             return true;
         }
     }

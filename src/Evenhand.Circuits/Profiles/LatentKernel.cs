@@ -96,18 +96,22 @@ internal static class LatentKernel<T, TArithmetic>
     {
         unchecked
         {
+            // One reference a record: the records' numbers are then read without computing their places anew.
+            ref T u1 = ref Unsafe.Add(ref u, k), u2 = ref Unsafe.Add(ref u1, k), u3 = ref Unsafe.Add(ref u2, k), u4 = ref Unsafe.Add(ref u3, k);
+            ref T u5 = ref Unsafe.Add(ref u4, k), u6 = ref Unsafe.Add(ref u5, k), u7 = ref Unsafe.Add(ref u6, k);
             Vector512<T> m0 = default, m1 = default, m2 = default, m3 = default, m4 = default, m5 = default, m6 = default, m7 = default;
-            for (int i = 0; i < k; i++)
+            for (nint i = 0; i < k; i++)
             {
-                Vector512<T> row = Vector512.LoadUnsafe(ref a, (nuint)(i * k));
+                Vector512<T> row = Vector512.LoadUnsafe(ref a);
                 m0 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i)), row, m0);
-                m1 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + k)), row, m1);
-                m2 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (2 * k))), row, m2);
-                m3 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (3 * k))), row, m3);
-                m4 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (4 * k))), row, m4);
-                m5 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (5 * k))), row, m5);
-                m6 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (6 * k))), row, m6);
-                m7 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u, i + (7 * k))), row, m7);
+                m1 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u1, i)), row, m1);
+                m2 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u2, i)), row, m2);
+                m3 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u3, i)), row, m3);
+                m4 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u4, i)), row, m4);
+                m5 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u5, i)), row, m5);
+                m6 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u6, i)), row, m6);
+                m7 = TArithmetic.MultiplyAdd(Vector512.Create(Unsafe.Add(ref u7, i)), row, m7);
+                a = ref Unsafe.Add(ref a, k);
             }
 
             m0.StoreUnsafe(ref m);
@@ -159,18 +163,22 @@ internal static class LatentKernel<T, TArithmetic>
     {
         unchecked
         {
+            // One reference a record: the records' numbers are then read without computing their places anew.
+            ref T u1 = ref Unsafe.Add(ref u, k), u2 = ref Unsafe.Add(ref u1, k), u3 = ref Unsafe.Add(ref u2, k), u4 = ref Unsafe.Add(ref u3, k);
+            ref T u5 = ref Unsafe.Add(ref u4, k), u6 = ref Unsafe.Add(ref u5, k), u7 = ref Unsafe.Add(ref u6, k);
             Vector256<T> m0 = default, m1 = default, m2 = default, m3 = default, m4 = default, m5 = default, m6 = default, m7 = default;
-            for (int i = 0; i < k; i++)
+            for (nint i = 0; i < k; i++)
             {
-                Vector256<T> row = Vector256.LoadUnsafe(ref a, (nuint)(i * k));
+                Vector256<T> row = Vector256.LoadUnsafe(ref a);
                 m0 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i)), row, m0);
-                m1 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + k)), row, m1);
-                m2 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (2 * k))), row, m2);
-                m3 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (3 * k))), row, m3);
-                m4 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (4 * k))), row, m4);
-                m5 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (5 * k))), row, m5);
-                m6 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (6 * k))), row, m6);
-                m7 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u, i + (7 * k))), row, m7);
+                m1 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u1, i)), row, m1);
+                m2 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u2, i)), row, m2);
+                m3 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u3, i)), row, m3);
+                m4 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u4, i)), row, m4);
+                m5 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u5, i)), row, m5);
+                m6 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u6, i)), row, m6);
+                m7 = TArithmetic.MultiplyAdd(Vector256.Create(Unsafe.Add(ref u7, i)), row, m7);
+                a = ref Unsafe.Add(ref a, k);
             }
 
             m0.StoreUnsafe(ref m);

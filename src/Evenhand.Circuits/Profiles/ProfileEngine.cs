@@ -227,13 +227,17 @@ internal sealed class ProfileEngine<T, TArithmetic>
         ref T to = ref MemoryMarshal.GetArrayDataReference(into);
         unchecked
         {
+            int width = _width;
             for (int e = 0; e < records; e++)
             {
-                nuint row = (nuint)(codes[e] * _width), at = (nuint)(e * _width);
-                for (int i = 0; i < _width; i += Vector512<T>.Count)
+                ref T row = ref Unsafe.Add(ref from, codes[e] * width);
+                Vector512.LoadUnsafe(ref row).StoreUnsafe(ref to);
+                for (int i = Vector512<T>.Count; i < width; i += Vector512<T>.Count)
                 {
-                    Vector512.LoadUnsafe(ref from, row + (nuint)i).StoreUnsafe(ref to, at + (nuint)i);
+                    Vector512.LoadUnsafe(ref row, (nuint)i).StoreUnsafe(ref to, (nuint)i);
                 }
+
+                to = ref Unsafe.Add(ref to, width);
             }
         }
     }
@@ -245,13 +249,17 @@ internal sealed class ProfileEngine<T, TArithmetic>
         ref T to = ref MemoryMarshal.GetArrayDataReference(into);
         unchecked
         {
+            int width = _width;
             for (int e = 0; e < records; e++)
             {
-                nuint row = (nuint)(codes[e] * _width), at = (nuint)(e * _width);
-                for (int i = 0; i < _width; i += Vector512<T>.Count)
+                ref T row = ref Unsafe.Add(ref from, codes[e] * width);
+                (Vector512.LoadUnsafe(ref row) * Vector512.LoadUnsafe(ref to)).StoreUnsafe(ref to);
+                for (int i = Vector512<T>.Count; i < width; i += Vector512<T>.Count)
                 {
-                    (Vector512.LoadUnsafe(ref from, row + (nuint)i) * Vector512.LoadUnsafe(ref to, at + (nuint)i)).StoreUnsafe(ref to, at + (nuint)i);
+                    (Vector512.LoadUnsafe(ref row, (nuint)i) * Vector512.LoadUnsafe(ref to, (nuint)i)).StoreUnsafe(ref to, (nuint)i);
                 }
+
+                to = ref Unsafe.Add(ref to, width);
             }
         }
     }
@@ -350,13 +358,17 @@ internal sealed class ProfileEngine<T, TArithmetic>
         ref T to = ref MemoryMarshal.GetArrayDataReference(flows.Emissions[field]);
         unchecked
         {
-            for (int e = 0; e < block.Count; e++)
+            int width = _width, records = block.Count;
+            for (int e = 0; e < records; e++)
             {
-                nuint row = (nuint)(codes[e] * _width), at = (nuint)(e * _width);
-                for (int i = 0; i < _width; i += Vector512<T>.Count)
+                ref T row = ref Unsafe.Add(ref to, codes[e] * width);
+                (Vector512.LoadUnsafe(ref row) + Vector512.LoadUnsafe(ref from)).StoreUnsafe(ref row);
+                for (int i = Vector512<T>.Count; i < width; i += Vector512<T>.Count)
                 {
-                    (Vector512.LoadUnsafe(ref from, at + (nuint)i) + Vector512.LoadUnsafe(ref to, row + (nuint)i)).StoreUnsafe(ref to, row + (nuint)i);
+                    (Vector512.LoadUnsafe(ref row, (nuint)i) + Vector512.LoadUnsafe(ref from, (nuint)i)).StoreUnsafe(ref row, (nuint)i);
                 }
+
+                from = ref Unsafe.Add(ref from, width);
             }
         }
     }
