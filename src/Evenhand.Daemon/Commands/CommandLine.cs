@@ -20,6 +20,7 @@ internal sealed partial class CommandLine(IServiceProvider services)
         RootCommand root = new("Watches the decisions that an automated system makes about people: rates, gaps, what is certain and what is not, with evidence that anyone can verify.");
         root.Subcommands.Add(CheckCommand.Create(services));
         root.Subcommands.Add(ReplayCommand.Create(services));
+        root.Subcommands.Add(LearnCommand.Create(services));
         root.Subcommands.Add(EvidenceCommand.Create(services));
         root.Subcommands.Add(SchemaCommand.Create(services));
         return root;

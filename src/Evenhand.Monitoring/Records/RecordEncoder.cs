@@ -33,7 +33,7 @@ internal sealed class RecordEncoder
         _hasher = hasher;
         _kind = kind;
         _unit = charter.Time?.Unit ?? TimeUnit.Rfc3339;
-        _coders = [.. layout.Fields.Select(field => new FieldCoder(field))];
+        _coders = [.. layout.Fields.Select((field, i) => new FieldCoder(field, layout.Numbers, i))];
         _onlySlots = [.. _places.Fields.Select(range => range.Count == 1 ? _order[range.From] : -1)];
         _score = charter.Score;
         Fill(_decisions, charter.Decision?.Favourable, (int)DecisionCode.Favourable);
