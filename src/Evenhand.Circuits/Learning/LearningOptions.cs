@@ -9,8 +9,8 @@ public sealed record LearningOptions
     /// <summary>Seed of starts, orders and splits. Default 1.</summary>
     public int Seed { get; init; } = 1;
 
-    /// <summary>Records in a mini-batch. Default 256.</summary>
-    public int BatchRecords { get; init; } = 256;
+    /// <summary>Records in a mini-batch; null for a fiftieth of the sample, but 256 at least and 1,024 at most. Default null.</summary>
+    public int? BatchRecords { get; init; }
 
     /// <summary>Most passes over the sample by mini-batches. Default 60.</summary>
     public int MostPasses { get; init; } = 60;

@@ -163,17 +163,18 @@ public sealed class ProfileLearner
             Random random = new(options.Seed + 1);
             ProfileStatistics running = new(_shape), batch = new(_shape);
             int[] order = [.. Enumerable.Range(0, sample.Records)];
+            int size = options.BatchRecords ?? Math.Clamp(sample.Records / 50, 256, 1024);
             int stale = 0;
             for (int pass = 0; pass < options.MostPasses && stale < options.Patience; pass++)
             {
                 double at = options.MostPasses == 1 ? 0 : (double)pass / (options.MostPasses - 1);
                 double share = options.Shares.First * Math.Pow(options.Shares.Last / options.Shares.First, at);
                 random.Shuffle(order);
-                foreach (int[] rows in order.Chunk(options.BatchRecords))
+                foreach (int[] rows in order.Chunk(size))
                 {
                     batch.Clear();
                     _step.Add(sample, rows, batch);
-                    running.Blend(batch, rows.Length == options.BatchRecords ? share : share * rows.Length / options.BatchRecords, sample.Records);
+                    running.Blend(batch, share * rows.Length / size, sample.Records);
                     _step.Take(new ProfilePrior(_shape, options.Pseudo, _learner._margins, running).Likeliest(running));
                 }
 

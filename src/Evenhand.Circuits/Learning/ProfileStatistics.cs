@@ -71,7 +71,7 @@ internal sealed class ProfileStatistics
     /// <summary>Shares the profile's posterior out among the cells that the evidence allows.</summary>
     private void AddCells(ProfileFlows<double> flows, ProfileParameters at)
     {
-        int k = _shape.Profiles;
+        int k = _shape.Profiles, patterns = _shape.PatternCount;
         double[] shares = new double[_shape.CellCount];
         for (int evidence = 0; evidence < _shape.EvidenceCount; evidence++)
         {
@@ -81,23 +81,23 @@ internal sealed class ProfileStatistics
                 continue;
             }
 
-            int pattern = _shape.PatternOf(evidence);
+            ReadOnlySpan<int> cells = _shape.CellsOf(evidence);
+            int pattern = _shape.KnownLabelsOf(evidence);
             for (int z = 0; z < k; z++)
             {
                 double whole = 0;
-                for (int cell = 0; cell < shares.Length; cell++)
+                for (int i = 0; i < cells.Length; i++)
                 {
-                    int decision = _shape.CellOf(cell).Decision;
-                    shares[cell] = !_shape.Allows(evidence, cell) ? 0 : at.Cells[cell] * at.Weights[(cell * k) + z]
-                        * at.Patterns[(((decision * k) + z) * _shape.PatternCount) + pattern];
-                    whole += shares[cell];
+                    int cell = cells[i];
+                    shares[i] = at.Cells[cell] * at.Weights[(cell * k) + z] * at.Patterns[(((_shape.DecisionOf(cell) * k) + z) * patterns) + pattern];
+                    whole += shares[i];
                 }
 
-                for (int cell = 0; cell < shares.Length && whole > 0; cell++)
+                for (int i = 0; i < cells.Length && whole > 0; i++)
                 {
-                    double count = flow[z] * shares[cell] / whole;
-                    Counts.Weights[(cell * k) + z] += count;
-                    Counts.Patterns[(((_shape.CellOf(cell).Decision * k) + z) * _shape.PatternCount) + pattern] += count;
+                    double count = flow[z] * shares[i] / whole;
+                    Counts.Weights[(cells[i] * k) + z] += count;
+                    Counts.Patterns[(((_shape.DecisionOf(cells[i]) * k) + z) * patterns) + pattern] += count;
                 }
             }
         }

@@ -139,18 +139,14 @@ internal sealed class ProfileEngine<T, TArithmetic>
         int k = _shape.Profiles;
         for (int evidence = 0; evidence < _shape.EvidenceCount; evidence++)
         {
-            int pattern = _shape.PatternOf(evidence);
+            int pattern = _shape.KnownLabelsOf(evidence);
             for (int z = 0; z < k; z++)
             {
                 double sum = 0;
-                for (int cell = 0; cell < _shape.CellCount; cell++)
+                foreach (int cell in _shape.CellsOf(evidence))
                 {
-                    if (_shape.Allows(evidence, cell))
-                    {
-                        int decision = _shape.CellOf(cell).Decision;
-                        sum += parameters.Cells[cell] * parameters.Weights[(cell * k) + z]
-                            * parameters.Patterns[(((decision * k) + z) * _shape.PatternCount) + pattern];
-                    }
+                    sum += parameters.Cells[cell] * parameters.Weights[(cell * k) + z]
+                        * parameters.Patterns[(((_shape.DecisionOf(cell) * k) + z) * _shape.PatternCount) + pattern];
                 }
 
                 _evidence[(evidence * _width) + z] = T.CreateChecked(sum);

@@ -14,6 +14,8 @@ public sealed class ProfileShape
 {
     private readonly int[] _cellStrides;
     private readonly int[] _evidenceStrides;
+    private readonly int[][] _allowed;
+    private readonly int[] _patterns;
 
     /// <summary>Lays out a profile circuit.</summary>
     /// <param name="profiles">Number of hidden states K, at least 1.</param>
@@ -43,6 +45,8 @@ public sealed class ProfileShape
         _evidenceStrides = Strides(1);
         CellCount = _cellStrides[0];
         EvidenceCount = _evidenceStrides[0];
+        _allowed = [.. Enumerable.Range(0, EvidenceCount).Select(e => Enumerable.Range(0, CellCount).Where(c => Allows(e, c)).ToArray())];
+        _patterns = [.. Enumerable.Range(0, EvidenceCount).Select(PatternOf)];
     }
 
     /// <summary>Number of hidden states.</summary>
@@ -107,8 +111,17 @@ public sealed class ProfileShape
         return (codes, cell % Decisions);
     }
 
+    /// <summary>The cells that evidence allows.</summary>
+    public ReadOnlySpan<int> CellsOf(int evidence) => _allowed[evidence];
+
+    /// <summary>The decision of a cell.</summary>
+    public int DecisionOf(int cell) => cell % Decisions;
+
+    /// <summary>The pattern of known labels of evidence: bit g for group g.</summary>
+    public int KnownLabelsOf(int evidence) => _patterns[evidence];
+
     /// <summary>Whether evidence allows a cell.</summary>
-    public bool Allows(int evidence, int cell)
+    private bool Allows(int evidence, int cell)
     {
         (int[] codes, int decision) = CellOf(cell);
         (int[] labels, int given) = LabelsOf(evidence);
@@ -121,8 +134,7 @@ public sealed class ProfileShape
         return allows;
     }
 
-    /// <summary>The pattern of known labels of evidence: bit g for group g.</summary>
-    public int PatternOf(int evidence)
+    private int PatternOf(int evidence)
     {
         (int[] labels, _) = LabelsOf(evidence);
         int pattern = 0;

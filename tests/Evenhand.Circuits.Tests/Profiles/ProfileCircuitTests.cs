@@ -180,7 +180,7 @@ public sealed class ProfileCircuitTests
         if (shape.Groups.Count > 0)
         {
             int known = circuit.IndexOf("(known labels)");
-            factors = factors.With(known, Factor.OfStates(Enumerable.Range(0, shape.PatternCount).Select(p => p == shape.PatternOf(evidence[e]) ? 1.0 : 0)));
+            factors = factors.With(known, Factor.OfStates(Enumerable.Range(0, shape.PatternCount).Select(p => p == shape.KnownLabelsOf(evidence[e]) ? 1.0 : 0)));
         }
 
         for (int f = 0; f < codes.Length; f++)
