@@ -136,9 +136,9 @@ internal sealed class ReplayCommand
             throw new CommandFailure(2, "- (stdin) can be read only once");
         }
 
-        if (charter.LabelFeed is not null)
+        if (charter.LabelFeed?.Topic is { } topic)
         {
-            throw new CommandFailure(2, "the charter takes group labels from elsewhere (`labels`), which replay does not read yet: join them into the records first");
+            throw new CommandFailure(2, $"the charter takes group labels from the topic {topic}, which replay does not read: write them to a file and name it under labels: file");
         }
     }
 

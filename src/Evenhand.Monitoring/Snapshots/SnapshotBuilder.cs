@@ -49,7 +49,8 @@ public static class SnapshotBuilder
             ["fit"] = new JsonObject(),
             ["explanations"] = new JsonArray(),
             ["state"] = state,
-        }.With("outcomes", content.Outcomes is null ? null : Outcomes(content.Outcomes));
+        }.With("outcomes", content.Outcomes is null ? null : Outcomes(content.Outcomes))
+            .With("labels", content.Labels is null ? null : Labels(content.Labels));
     }
 
     /// <summary>The name under which the state carries the sums that a window's rules compare with.</summary>
@@ -122,6 +123,16 @@ public static class SnapshotBuilder
             ["records"] = CanonicalJson.Integer(everyone.Decided + everyone.Other),
         };
     }
+
+    private static JsonObject Labels(LabelsCount count) => new()
+    {
+        ["read"] = CanonicalJson.Integer(count.Read),
+        ["kept"] = CanonicalJson.Integer(count.Kept),
+        ["duplicate"] = CanonicalJson.Integer(count.Duplicate),
+        ["rejected"] = CanonicalJson.Integer(count.Rejected),
+        ["filled"] = CanonicalJson.Integer(count.Filled),
+        ["late"] = CanonicalJson.Integer(count.Late),
+    };
 
     private static JsonObject Outcomes(OutcomesCount count) => new()
     {
