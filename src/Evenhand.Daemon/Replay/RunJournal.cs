@@ -30,11 +30,21 @@ internal sealed class RunJournal : IDisposable
     }
 
     /// <summary>Hands a commit over; waits while the queue is full.</summary>
+    /// <exception cref="StoreException">A commit before this one failed.</exception>
     public void Add(ShardCommit commit)
     {
-        if (!_queue.Writer.TryWrite(commit))
+        try
         {
-            _queue.Writer.WriteAsync(commit).AsTask().GetAwaiter().GetResult();
+            if (!_queue.Writer.TryWrite(commit))
+            {
+                _queue.Writer.WriteAsync(commit).AsTask().GetAwaiter().GetResult();
+            }
+        }
+        catch (ChannelClosedException)
+        {
+            // The writer closed the queue because the store failed; it says how.
+            _writer.GetAwaiter().GetResult();
+            throw;
         }
     }
 

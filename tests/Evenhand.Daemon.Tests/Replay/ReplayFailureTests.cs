@@ -1,3 +1,5 @@
+using Evenhand.Daemon.Tests.Processes;
+
 namespace Evenhand.Daemon.Tests.Replay;
 
 /// <summary>Bad usage and bad input of <c>evenhand replay</c>: exit status 2 and lines that a person can act on.</summary>

@@ -2,6 +2,7 @@ using System.Globalization;
 using System.IO.Compression;
 using System.Text;
 using System.Text.Json.Nodes;
+using Evenhand.Daemon.Tests.Processes;
 using Evenhand.Testing;
 
 namespace Evenhand.Daemon.Tests.Replay;

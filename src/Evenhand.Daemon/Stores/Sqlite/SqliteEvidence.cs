@@ -20,7 +20,7 @@ internal class SqliteEvidence : IEvidenceStore
     protected string File { get; }
 
     /// <summary>The connection.</summary>
-    protected SqliteConnection Connection { get; }
+    protected internal SqliteConnection Connection { get; }
 
     /// <summary>Opens a store for reading.</summary>
     /// <exception cref="StoreException">There is none, or it cannot be read.</exception>
@@ -36,6 +36,8 @@ internal class SqliteEvidence : IEvidenceStore
             SqliteConnection connection = SqliteConnections.Reader(file);
             try
             {
+                // One view for as long as it is open: a snapshot that is appended meanwhile must not look like a broken chain.
+                connection.BeginTransaction(deferred: true);
                 SqliteSchema.RefuseNewer(connection, file);
                 return connection.ExecuteScalar<long>("SELECT count(*) FROM sqlite_master WHERE name = 'snapshot'") == 0
                     ? throw new StoreException($"store sqlite:{file}: holds no chain; check the name")
@@ -53,12 +55,12 @@ internal class SqliteEvidence : IEvidenceStore
     public ChainHead Head() => Run(() => Connection.QuerySingle<ChainHead>("SELECT sequence AS Sequence, sha256 AS Sha256 FROM chain_head"));
 
     /// <inheritdoc/>
-    public IReadOnlyList<SnapshotEntry> Snapshots() => Run(() => Connection.Query<SnapshotEntry>(
+    public IReadOnlyList<SnapshotEntry> Snapshots() => Run(() => (IReadOnlyList<SnapshotEntry>)[.. Connection.Query<SnapshotRow>(
         """
         SELECT sequence AS Sequence, kind AS Kind, charter AS Charter, as_of AS AsOf, created_at AS CreatedAt,
                previous_sha256 AS PreviousSha256, sha256 AS Sha256, length(document) AS Size
         FROM snapshot ORDER BY sequence
-        """).AsList());
+        """).Select(r => r.Entry)]);
 
     /// <inheritdoc/>
     public byte[]? Snapshot(long sequence) =>
@@ -108,4 +110,26 @@ internal class SqliteEvidence : IEvidenceStore
     }
 
     private T Run<T>(Func<T> work) => SqliteFaults.Run(File, work);
+
+    // Set by name, not by constructor: where there is no row, SQLite cannot tell the type of length(document).
+    private sealed record SnapshotRow
+    {
+        public long Sequence { get; init; }
+
+        public string Kind { get; init; } = "";
+
+        public string Charter { get; init; } = "";
+
+        public string AsOf { get; init; } = "";
+
+        public string CreatedAt { get; init; } = "";
+
+        public string PreviousSha256 { get; init; } = "";
+
+        public string Sha256 { get; init; } = "";
+
+        public long Size { get; init; }
+
+        public SnapshotEntry Entry => new(Sequence, Kind, Charter, AsOf, CreatedAt, PreviousSha256, Sha256, Size);
+    }
 }
