@@ -34,7 +34,11 @@ internal sealed partial class CommandLine(IServiceProvider services)
         if (parsed.Errors.Count > 0 && parsed.Action is not System.CommandLine.Help.HelpAction)
         {
             string command = parsed.CommandResult.Command is RootCommand ? "evenhand" : $"evenhand {parsed.CommandResult.Command.Name}";
-            return Fail(2, $"{parsed.Errors[0].Message.TrimEnd('.')}; see {command} --help");
+            // An unknown word says more than the command that is missing because of it; a failure is one line.
+            string problem = parsed.UnmatchedTokens.Count > 0 && parsed.CommandResult.Command is RootCommand
+                ? $"{parsed.UnmatchedTokens[0]} is no command"
+                : parsed.Errors[0].Message.ReplaceLineEndings(" ").TrimEnd('.', ' ');
+            return Fail(2, $"{problem}; see {command} --help");
         }
 
         try

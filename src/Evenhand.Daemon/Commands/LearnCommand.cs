@@ -63,16 +63,18 @@ internal sealed class LearnCommand
             throw new CommandFailure(2, "the charter has no `inputs`: a circuit needs at least one field to learn");
         }
 
+        string[] inputs = parsed.GetRequiredValue(_inputs);
+        using OutputFile file = OutputFile.Open("--out", parsed.GetRequiredValue(_out), [parsed.GetRequiredValue(_charter), .. inputs, parsed.GetValue(_holdout), parsed.GetValue(_test)]);
         int? profiles = Profiles(parsed.GetValue(_profiles), charter);
         (double share, string? holdout) = Holdout(parsed.GetValue(_holdout));
         using ProgressBar? bar = _terminal.ShowsProgress ? new ProgressBar(_terminal.Error, _clock) : null;
-        PopulationSample sample = Read(charter, parsed.GetRequiredValue(_inputs), bar);
+        PopulationSample sample = Read(charter, inputs, bar);
         Charter cut = sample.Cut();
         TrainingTable all = sample.Table(cut);
         (TrainingTable learned, TrainingTable held) = holdout is null
             ? all.Split(share, parsed.GetValue(_seed))
             : (all, Read(cut, [holdout], bar).Table(cut, sample));
-        TrainingTable? test = parsed.GetValue(_test) is { } file ? Read(cut, [file], bar).Table(cut, sample) : null;
+        TrainingTable? test = parsed.GetValue(_test) is { } testing ? Read(cut, [testing], bar).Table(cut, sample) : null;
         LearningOptions options = new() { Profiles = profiles ?? 1, Seed = parsed.GetValue(_seed) };
         void learning(double done) => bar?.Report("learning", done);
         ProfileCircuit circuit = (profiles is null ? ProfileSelection.Learn(learned, held, options, learning) : new ProfileLearner(learned, held, options, learning).Learn()).Circuit;
@@ -85,7 +87,12 @@ internal sealed class LearnCommand
             Test = test is null ? null : HeldOutLikelihood.Of(circuit, learned, test),
             Calibrations = [.. Calibrations(circuit, held)],
         };
-        Write(parsed.GetRequiredValue(_out), circuit, report);
+        ProfileFile.Write(circuit, file.Stream, json =>
+        {
+            json.WritePropertyName("learned");
+            report.ToJson().WriteTo(json);
+        });
+        file.Complete();
         bar?.Dispose();
         Print(report, parsed.GetValue(_json));
         return 0;
@@ -154,23 +161,6 @@ internal sealed class LearnCommand
         return share is > 0 and < 1
             ? (share, null)
             : throw new CommandFailure(2, $"--holdout {text}: give a share above 0 and below 1, or a file");
-    }
-
-    private static void Write(string file, ProfileCircuit circuit, LearnReport report)
-    {
-        try
-        {
-            using FileStream stream = File.Create(file);
-            ProfileFile.Write(circuit, stream, json =>
-            {
-                json.WritePropertyName("learned");
-                report.ToJson().WriteTo(json);
-            });
-        }
-        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
-        {
-            throw new CommandFailure(3, $"{file}: cannot be written ({e.Message})");
-        }
     }
 
     private void Print(LearnReport report, bool asJson)

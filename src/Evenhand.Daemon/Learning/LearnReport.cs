@@ -2,6 +2,7 @@ using System.Globalization;
 using System.Text.Json.Nodes;
 using Evenhand.Circuits.Learning;
 using Evenhand.Circuits.Profiles;
+using Evenhand.Daemon.Hosting;
 using Evenhand.Monitoring.Population;
 using Spectre.Console;
 
@@ -57,7 +58,7 @@ internal sealed class LearnReport
     {
         IAnsiConsole console = AnsiConsole.Create(new AnsiConsoleSettings
         {
-            Out = new AnsiConsoleOutput(to),
+            Out = new AnsiConsoleOutput(new PrintableWriter(to)),
             Ansi = AnsiSupport.No,
             ColorSystem = ColorSystemSupport.NoColors,
             Interactive = InteractionSupport.No,

@@ -36,7 +36,7 @@ internal sealed class LabelsFile
         {
             batch.Clear();
             more = file.Fill(batch);
-            labels.Add(batch, path, remark);
+            labels.Add(batch, path, file.PlaceOf, remark);
         }
 
         labels.Sha256 = file.Sha256;
@@ -47,7 +47,7 @@ internal sealed class LabelsFile
     public LabelsCount CountsOf(ShardCounts counts) =>
         new(_read, Index.Count, Index.Duplicates, _rejected, counts.LabelsFilled, counts.LabelsLate);
 
-    private void Add(RecordBatch batch, string path, Action<string> remark)
+    private void Add(RecordBatch batch, string path, Func<long, string> placeOf, Action<string> remark)
     {
         Index.Add(batch);
         for (int i = 0; i < batch.Count; i++)
@@ -55,7 +55,7 @@ internal sealed class LabelsFile
             _read++;
             if (batch.Rejected[i] != RejectReason.None && _rejected++ == 0)
             {
-                remark($"the first label refused is {path}:{batch.Positions[i] + 1}, as {batch.Rejected[i].Name()}");
+                remark($"the first label refused is {path}{placeOf(batch.Positions[i])}, as {batch.Rejected[i].Name()}");
             }
         }
     }

@@ -19,6 +19,7 @@ internal sealed class ReplayRun
     private readonly IReplayProgress? _progress;
     private readonly TimeProvider _clock;
     private readonly string? _labelsPath;
+    private Func<long, string> _placeOf = position => $":{position + 1}";
     private readonly List<string> _remarks = [];
     private readonly List<string> _hashes = [];
     private readonly Dictionary<string, RefusalSample> _refusals = [];
@@ -107,6 +108,7 @@ internal sealed class ReplayRun
         for (int input = 0; input < _request.Inputs.Count; input++)
         {
             using RecordFile file = RecordFile.Open(_request.Inputs[input], _charter, _layout.Records, hasher, RecordKind.Decision);
+            _placeOf = file.PlaceOf;
             if (_request.AsOf is { } asOf)
             {
                 file.DefaultTime = asOf - 1;
@@ -170,7 +172,8 @@ internal sealed class ReplayRun
         {
             if (!_refusals.TryGetValue(entry.Reason, out RefusalSample? sample))
             {
-                sample = new RefusalSample($"{(_request.Inputs[entry.Input] == "-" ? "stdin" : _request.Inputs[entry.Input])}:{entry.Position + 1}");
+                string name = _request.Inputs[entry.Input] == "-" ? "stdin" : _request.Inputs[entry.Input];
+                sample = new RefusalSample($"{name}{_placeOf(entry.Position)}");
                 _refusals.Add(entry.Reason, sample);
             }
 

@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Text.Json.Nodes;
+using Evenhand.Daemon.Hosting;
 using Spectre.Console;
 
 namespace Evenhand.Daemon.Replay;
@@ -12,6 +13,8 @@ internal static class SnapshotTable
     private const string Caution =
         "A gap is a signal to investigate, not proof of unlawful discrimination; its absence is no clearance. Local law and licensed professionals decide.";
 
+    private static readonly string[] Shown = ["selection_rate", "selection_rate_gap", "impact_ratio", "missing_rate", "unlisted_rate"];
+
     private static readonly string[] AlertKeys = ["measure", "window", "grouping", "group", "field"];
 
     /// <summary>Writes the tables.</summary>
@@ -19,7 +22,7 @@ internal static class SnapshotTable
     {
         IAnsiConsole console = AnsiConsole.Create(new AnsiConsoleSettings
         {
-            Out = new AnsiConsoleOutput(to),
+            Out = new AnsiConsoleOutput(new PrintableWriter(to)),
             Ansi = AnsiSupport.No,
             ColorSystem = ColorSystemSupport.NoColors,
             Interactive = InteractionSupport.No,
@@ -39,6 +42,7 @@ internal static class SnapshotTable
         }
 
         Absences(readings, console);
+        FurtherMeasures(snapshot, readings, console);
         Alerts(snapshot, console);
         console.WriteLine();
         console.WriteLine(Caution);
@@ -137,6 +141,18 @@ internal static class SnapshotTable
         console.Write(table);
     }
 
+    /// <summary>Names what is measured but not in the tables, so that nobody takes it for missing.</summary>
+    private static void FurtherMeasures(JsonObject snapshot, JsonNode[] readings, IAnsiConsole console)
+    {
+        string[] measures = [.. readings.Select(r => (string)r["measure"]!).Distinct().Where(m => !Shown.Contains(m))];
+        bool hasSlices = snapshot["readings"]!.AsArray().Any(r => r!["slice"] is not null);
+        if (measures.Length > 0)
+        {
+            console.WriteLine();
+            console.WriteLine($"Also measured, in the snapshot (--out, --json): {string.Join(", ", measures)}{(hasSlices ? "; everything by slice as well" : "")}.");
+        }
+    }
+
     private static void Alerts(JsonObject snapshot, IAnsiConsole console)
     {
         JsonArray alerts = snapshot["alerts"]!.AsArray();
@@ -147,7 +163,8 @@ internal static class SnapshotTable
             // One line an alert: what is judged, the number with its ends, the limit, and what a person should know.
             string what = string.Join(' ', AlertKeys.Select(k => (string?)alert![k]).Where(t => t is not null));
             string limit = Limit(alert!) is { } l ? $", limit {l}" : "";
-            string value = alert!["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
+            string changed = (string?)alert!["kind"] == "shift" ? "changed by " : "";
+            string value = alert["value"] is { } v ? $": {changed}{Number(v):0.####}{Ends(alert)}{(changed.Length > 0 ? " against the baseline" : "")}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
             console.WriteLine($"  {alert["severity"]} {alert["alert"]}{(what.Length > 0 ? $": {what}" : "")}{value}{note}");
         }

@@ -186,7 +186,7 @@ internal sealed class RecordEncoder
 
         if (value.IsPresent && value.Length > 0)
         {
-            return TimeParser.TryParse(value.Of(bytes), _unit, out time) ? RejectReason.None : RejectReason.BadTime;
+            return TimeParser.TryParse(value.Of(bytes), _unit, out time) && EventTimeRange.Contains(time) ? RejectReason.None : RejectReason.BadTime;
         }
 
         if (_kind != RecordKind.Decision)
