@@ -1,4 +1,5 @@
 using System.CommandLine;
+using System.CommandLine.Parsing;
 using Evenhand.Daemon.Hosting;
 using Evenhand.Daemon.Sources;
 using Evenhand.Daemon.Stores;
@@ -33,12 +34,11 @@ internal sealed partial class CommandLine(IServiceProvider services)
         ParseResult parsed = Root().Parse(args);
         if (parsed.Errors.Count > 0 && parsed.Action is not System.CommandLine.Help.HelpAction)
         {
-            string command = parsed.CommandResult.Command is RootCommand ? "evenhand" : $"evenhand {parsed.CommandResult.Command.Name}";
             // An unknown word says more than the command that is missing because of it; a failure is one line.
             string problem = parsed.UnmatchedTokens.Count > 0 && parsed.CommandResult.Command is RootCommand
                 ? $"{parsed.UnmatchedTokens[0]} is no command"
                 : parsed.Errors[0].Message.ReplaceLineEndings(" ").TrimEnd('.', ' ');
-            return Fail(2, $"{problem}; see {command} --help");
+            return Fail(2, $"{problem}; see {PathOf(parsed.CommandResult)} --help");
         }
 
         try
@@ -51,6 +51,9 @@ internal sealed partial class CommandLine(IServiceProvider services)
             return Fail(e);
         }
     }
+
+    private static string PathOf(CommandResult command) =>
+        command.Command is RootCommand ? "evenhand" : command.Parent is CommandResult above ? $"{PathOf(above)} {command.Command.Name}" : command.Command.Name;
 
     private int Fail(Exception e) => e switch
     {

@@ -1,11 +1,10 @@
 using System.CommandLine;
+using System.CommandLine.Parsing;
 using System.Globalization;
 using System.Security.Cryptography;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using Evenhand.Daemon.Evidence;
 using Evenhand.Daemon.Hosting;
-using Evenhand.Monitoring.Charters;
 using Evenhand.Monitoring.Snapshots;
 using Microsoft.Extensions.DependencyInjection;
 
@@ -14,7 +13,7 @@ namespace Evenhand.Daemon.Commands;
 /// <summary><c>evenhand evidence</c>: the chain of snapshots, in a store or an exported file.</summary>
 internal sealed class EvidenceCommand
 {
-    private readonly Argument<long> _sequence = new("SEQ") { Description = "The snapshot's sequence." };
+    private readonly Argument<long> _sequence = new("SEQ") { Description = "The snapshot's sequence.", CustomParser = Sequence };
     private readonly Argument<string?> _file = new("FILE") { Arity = ArgumentArity.ZeroOrOne, Description = "An exported chain, instead of a store." };
     private readonly Option<string?> _store = new("--store") { HelpName = "URL", Description = "The store, as sqlite:FILE." };
     private readonly Option<string?> _head = new("--head") { HelpName = "SHA256", Description = "The hash that the last snapshot must have, from wherever it was kept: shows a tail that was cut off." };
@@ -73,22 +72,7 @@ internal sealed class EvidenceCommand
     private int List(ParseResult parsed)
     {
         using IEvidenceSource source = Open(parsed);
-        JsonArray rows = [];
-        foreach (byte[] bytes in source.Documents())
-        {
-            JsonObject document = Parse(bytes, source.Name);
-            rows.Add(new JsonObject
-            {
-                ["sequence"] = document["sequence"]?.DeepClone(),
-                ["kind"] = document["kind"]?.DeepClone(),
-                ["charter"] = document["charter"]?["id"]?.DeepClone(),
-                ["as_of"] = document["as_of"]?.DeepClone(),
-                ["created_at"] = document["created_at"]?.DeepClone(),
-                ["sha256"] = document["sha256"]?.DeepClone(),
-                ["bytes"] = bytes.Length,
-            });
-        }
-
+        JsonArray rows = [.. source.Documents().Select(bytes => EvidenceDocument.Read(source.Name, () => Row(bytes, source.Name)))];
         if (parsed.GetValue(_json))
         {
             _terminal.Out.WriteLine(new JsonObject { ["snapshots"] = rows }.ToJsonString());
@@ -110,6 +94,21 @@ internal sealed class EvidenceCommand
         return 0;
     }
 
+    private static JsonObject Row(byte[] bytes, string name)
+    {
+        JsonObject document = EvidenceDocument.Parse(bytes, name);
+        return new JsonObject
+        {
+            ["sequence"] = document["sequence"]?.DeepClone(),
+            ["kind"] = document["kind"]?.DeepClone(),
+            ["charter"] = document["charter"]?["id"]?.DeepClone(),
+            ["as_of"] = document["as_of"]?.DeepClone(),
+            ["created_at"] = document["created_at"]?.DeepClone(),
+            ["sha256"] = document["sha256"]?.DeepClone(),
+            ["bytes"] = bytes.Length,
+        };
+    }
+
     private int Show(ParseResult parsed)
     {
         using IEvidenceSource source = Open(parsed);
@@ -122,10 +121,17 @@ internal sealed class EvidenceCommand
         }
         else
         {
-            Replay.SnapshotTable.Write(Parse(bytes, source.Name), _terminal.Out);
+            _terminal.Out.Write(EvidenceDocument.Read(source.Name, () => Tables(bytes, source.Name)));
         }
 
         return 0;
+    }
+
+    private static string Tables(byte[] bytes, string name)
+    {
+        using StringWriter tables = new();
+        Replay.SnapshotTable.Write(EvidenceDocument.Parse(bytes, name), tables);
+        return tables.ToString();
     }
 
     private int Verify(ParseResult parsed)
@@ -181,8 +187,8 @@ internal sealed class EvidenceCommand
     private int Recompute(ParseResult parsed)
     {
         using IEvidenceSource source = Open(parsed);
-        JsonObject document = Parse(Find(source, parsed.GetValue(_sequence)), source.Name);
-        RecomputeReport report = Compare(document, source.Name);
+        JsonObject document = EvidenceDocument.Parse(Find(source, parsed.GetValue(_sequence)), source.Name);
+        RecomputeReport report = EvidenceDocument.Recompute(document, source.Name);
         if (parsed.GetValue(_json))
         {
             _terminal.Out.WriteLine(new JsonObject
@@ -206,21 +212,6 @@ internal sealed class EvidenceCommand
         return report.Differences.Count == 0 ? 0 : 1;
     }
 
-    private static RecomputeReport Compare(JsonObject document, string name)
-    {
-        string text = (string?)document["charter"]?["text"] ?? throw new CommandFailure(2, $"{name}: the snapshot carries no charter");
-        CharterResult result = CharterParser.Parse("charter", System.Text.Encoding.UTF8.GetBytes(text));
-        Charter charter = result.Charter ?? throw new CommandFailure(2, $"{name}: this version cannot read the snapshot's charter: {result.Problems[0]}");
-        try
-        {
-            return Recomputation.Compare(document, charter);
-        }
-        catch (FormatException e)
-        {
-            throw new CommandFailure(2, $"{name}: {e.Message}");
-        }
-    }
-
     private int Export(ParseResult parsed)
     {
         using IEvidenceSource source = Open(parsed);
@@ -241,7 +232,7 @@ internal sealed class EvidenceCommand
     {
         foreach (byte[] document in source.Documents())
         {
-            to.Write(withoutState ? SnapshotSeal.WithoutState(document) : document);
+            to.Write(withoutState ? EvidenceDocument.WithoutState(document, source.Name) : document);
             to.Write("\n"u8);
         }
     }
@@ -249,17 +240,15 @@ internal sealed class EvidenceCommand
     private static byte[] Find(IEvidenceSource source, long sequence) =>
         source.Document(sequence) ?? throw new CommandFailure(2, $"{source.Name}: holds no snapshot {sequence}; evidence list shows which there are");
 
-    private static JsonObject Parse(byte[] bytes, string name)
+    private static long Sequence(ArgumentResult argument)
     {
-        try
+        string text = argument.Tokens[0].Value;
+        if (!long.TryParse(text, NumberStyles.None, CultureInfo.InvariantCulture, out long sequence))
         {
-            return JsonNode.Parse(bytes, documentOptions: new JsonDocumentOptions { MaxDepth = 128 }) as JsonObject
-                ?? throw new CommandFailure(1, $"{name}: a line holds no snapshot; evidence verify names it");
+            argument.AddError($"SEQ '{text}': not a whole number from 1; evidence list shows which snapshots there are");
         }
-        catch (JsonException)
-        {
-            throw new CommandFailure(1, $"{name}: a line is not JSON; evidence verify names it");
-        }
+
+        return sequence;
     }
 
     private static ECDsa? PublicKey(string? file)

@@ -1,5 +1,3 @@
-using System.Text.Json;
-using System.Text.Json.Nodes;
 using Evenhand.Daemon.Sources;
 
 namespace Evenhand.Daemon.Evidence;
@@ -50,7 +48,7 @@ internal sealed class FileEvidence : IEvidenceSource
     }
 
     /// <inheritdoc/>
-    public byte[]? Document(long sequence) => Documents().FirstOrDefault(d => SequenceOf(d) == sequence);
+    public byte[]? Document(long sequence) => Documents().FirstOrDefault(d => DocumentJson.Whole(DocumentJson.TryParse(d), "sequence") == sequence);
 
     /// <inheritdoc/>
     public IEnumerable<string> OtherFaults() => [];
@@ -58,17 +56,5 @@ internal sealed class FileEvidence : IEvidenceSource
     /// <inheritdoc/>
     public void Dispose()
     {
-    }
-
-    private static long? SequenceOf(byte[] document)
-    {
-        try
-        {
-            return (long?)JsonNode.Parse(document)?["sequence"];
-        }
-        catch (Exception e) when (e is JsonException or InvalidOperationException or FormatException)
-        {
-            return null;
-        }
     }
 }

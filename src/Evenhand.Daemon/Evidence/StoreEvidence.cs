@@ -1,4 +1,3 @@
-using System.Text.Json.Nodes;
 using Evenhand.Daemon.Stores;
 
 namespace Evenhand.Daemon.Evidence;
@@ -45,23 +44,18 @@ internal sealed class StoreEvidence(IEvidenceStore store, string name) : IEviden
 
     private string? Difference(SnapshotEntry entry)
     {
-        JsonNode? document;
-        try
-        {
-            document = JsonNode.Parse(store.Snapshot(entry.Sequence)!);
-        }
-        catch (System.Text.Json.JsonException)
+        if (DocumentJson.TryParse(store.Snapshot(entry.Sequence)!) is not { } document)
         {
             // The verifier names it.
             return null;
         }
 
-        return (string?)document!["kind"] != entry.Kind ? "kind"
-            : (string?)document["charter"]?["id"] != entry.Charter ? "charter"
-            : (string?)document["as_of"] != entry.AsOf ? "as_of"
-            : (string?)document["created_at"] != entry.CreatedAt ? "created_at"
-            : (string?)document["previous_sha256"] != entry.PreviousSha256 ? "previous_sha256"
-            : (string?)document["sha256"] != entry.Sha256 ? "sha256"
+        return DocumentJson.Text(document, "kind") != entry.Kind ? "kind"
+            : DocumentJson.Text(document["charter"], "id") != entry.Charter ? "charter"
+            : DocumentJson.Text(document, "as_of") != entry.AsOf ? "as_of"
+            : DocumentJson.Text(document, "created_at") != entry.CreatedAt ? "created_at"
+            : DocumentJson.Text(document, "previous_sha256") != entry.PreviousSha256 ? "previous_sha256"
+            : DocumentJson.Text(document, "sha256") != entry.Sha256 ? "sha256"
             : null;
     }
 }

@@ -10,7 +10,7 @@ internal class StoreException : Exception
     }
 
     /// <summary>Says what is wrong and how to mend it, with the cause.</summary>
-    public StoreException(string message, Exception innerException)
+    public StoreException(string message, Exception? innerException)
         : base(message, innerException)
     {
     }

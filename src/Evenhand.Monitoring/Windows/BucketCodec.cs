@@ -1,5 +1,3 @@
-using System.Security.Cryptography;
-
 namespace Evenhand.Monitoring.Windows;
 
 /// <summary>The stored form of a bucket's sums: <c>evenhand-bucket/1</c>, see <c>bucket-format.md</c>.</summary>
@@ -10,7 +8,6 @@ namespace Evenhand.Monitoring.Windows;
 public static class BucketCodec
 {
     private const byte Version = 1;
-    private const int ChecksumLength = 8;
 
     /// <summary>Packs sums.</summary>
     public static byte[] Pack(ReadOnlySpan<long> values)
@@ -46,7 +43,7 @@ public static class BucketCodec
     public static void AddTo(ReadOnlySpan<byte> packed, Span<long> into)
     {
         Verify(packed);
-        PackedReader reader = new(packed[1..^ChecksumLength]);
+        PackedReader reader = new(packed[1..^Checksum.Length]);
         if (reader.Number() != (ulong)into.Length)
         {
             throw new StoredStateException("a stored bucket has another length than this charter's sums");
@@ -70,16 +67,16 @@ public static class BucketCodec
         }
     }
 
-    private static void Verify(ReadOnlySpan<byte> packed)
+    /// <summary>Checks version and checksum, not the length.</summary>
+    /// <exception cref="StoredStateException">Wrong version or checksum.</exception>
+    public static void Verify(ReadOnlySpan<byte> packed)
     {
-        if (packed.Length < ChecksumLength + 2 || packed[0] != Version)
+        if (packed.Length < Checksum.Length + 2 || packed[0] != Version)
         {
             throw new StoredStateException("a stored bucket has an unknown format");
         }
 
-        Span<byte> hash = stackalloc byte[SHA256.HashSizeInBytes];
-        SHA256.HashData(packed[..^ChecksumLength], hash);
-        if (!hash[..ChecksumLength].SequenceEqual(packed[^ChecksumLength..]))
+        if (!Checksum.Holds(packed))
         {
             throw new StoredStateException("a stored bucket fails its checksum: the store is damaged; restore it, or replay into an empty one");
         }
@@ -110,11 +107,9 @@ public static class BucketCodec
 
         public byte[] Finish()
         {
-            Span<byte> hash = stackalloc byte[SHA256.HashSizeInBytes];
-            SHA256.HashData(_bytes.AsSpan(0, _length), hash);
-            byte[] result = new byte[_length + ChecksumLength];
+            byte[] result = new byte[_length + Checksum.Length];
             _bytes.AsSpan(0, _length).CopyTo(result);
-            hash[..ChecksumLength].CopyTo(result.AsSpan(_length));
+            Checksum.Write(_bytes.AsSpan(0, _length), result.AsSpan(_length));
             return result;
         }
 

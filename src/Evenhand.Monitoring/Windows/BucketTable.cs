@@ -66,7 +66,12 @@ internal sealed class BucketTable(int length, Retention retention)
     }
 
     /// <summary>Takes a bucket from the store.</summary>
-    public void Load(BucketKey key, byte[] packed) => _buckets[key] = SumBucket.Stored(key, packed);
+    /// <exception cref="StoredStateException">It is damaged. Said now, not when somebody first needs it: a damaged store is not to be built upon.</exception>
+    public void Load(BucketKey key, byte[] packed)
+    {
+        BucketCodec.Verify(packed);
+        _buckets[key] = SumBucket.Stored(key, packed);
+    }
 
     /// <summary>Drops the buckets that are too old to be kept and says which.</summary>
     public List<BucketKey> Prune(long newest)

@@ -90,11 +90,16 @@ internal sealed class RecentIds
         return sum;
     }
 
-    /// <summary>The ids added since the last call, in order, for the store.</summary>
+    /// <summary>The ids added since the last call, in order, with a checksum, for the store; empty where there are none.</summary>
     public byte[] TakeNew()
     {
         long from = Math.Max(_stored, _added - Capacity);
-        byte[] bytes = new byte[(_added - from) * EntryBytes];
+        if (from == _added)
+        {
+            return [];
+        }
+
+        byte[] bytes = new byte[((_added - from) * EntryBytes) + Checksum.Length];
         Span<byte> rest = bytes;
         for (long i = from; i < _added; i++, rest = rest[EntryBytes..])
         {
@@ -104,6 +109,7 @@ internal sealed class RecentIds
             BinaryPrimitives.WriteInt64LittleEndian(rest[12..], entry.Time);
         }
 
+        Checksum.Write(bytes.AsSpan(..^Checksum.Length), bytes.AsSpan(^Checksum.Length..));
         _stored = _added;
         return bytes;
     }
@@ -111,15 +117,21 @@ internal sealed class RecentIds
     /// <summary>Takes ids back from the store, chunk by chunk in order.</summary>
     /// <param name="first">How many ids had been added before this chunk.</param>
     /// <param name="chunk">What <see cref="TakeNew"/> gave.</param>
+    /// <exception cref="StoredStateException">The chunk is damaged, or out of order.</exception>
     public void Load(long first, ReadOnlySpan<byte> chunk)
     {
-        if (chunk.Length % EntryBytes != 0 || first < _added)
+        if (chunk.IsEmpty)
         {
-            throw new StoredStateException("the stored ids are damaged");
+            return;
+        }
+
+        if (!Checksum.Holds(chunk) || (chunk.Length - Checksum.Length) % EntryBytes != 0 || first < _added)
+        {
+            throw new StoredStateException("the stored ids fail their checksum: the store is damaged; restore it, or replay into an empty one");
         }
 
         _added = first;
-        for (; !chunk.IsEmpty; chunk = chunk[EntryBytes..])
+        for (chunk = chunk[..^Checksum.Length]; !chunk.IsEmpty; chunk = chunk[EntryBytes..])
         {
             ulong high = BinaryPrimitives.ReadUInt64LittleEndian(chunk);
             uint check = BinaryPrimitives.ReadUInt32LittleEndian(chunk[8..]);

@@ -5,7 +5,7 @@ namespace Evenhand.Monitoring.Windows;
 /// <param name="Dirty">Buckets that changed.</param>
 /// <param name="Dropped">Buckets too old to be kept.</param>
 /// <param name="FirstId">How many ids had been added before <paramref name="NewIds"/>.</param>
-/// <param name="NewIds">Ids seen since the last commit, packed.</param>
+/// <param name="NewIds">Ids seen since the last commit, packed, with a checksum behind; empty where there are none.</param>
 /// <param name="ForgottenIds">Ids with a number below this are remembered no longer.</param>
 /// <param name="Refused">Records refused since the last commit.</param>
 /// <param name="FoundOutcomes">Bits of outcomes whose decision has been seen; null without an outcomes file.</param>

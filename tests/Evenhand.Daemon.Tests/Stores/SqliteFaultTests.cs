@@ -1,7 +1,9 @@
+using System.Text;
 using Dapper;
 using Evenhand.Daemon.Replay;
 using Evenhand.Daemon.Stores;
 using Evenhand.Daemon.Stores.Sqlite;
+using Evenhand.Daemon.Tests.Processes;
 using Evenhand.Monitoring.Windows;
 using static Evenhand.Daemon.Tests.Stores.SampleCommits;
 
@@ -56,6 +58,37 @@ public sealed class SqliteFaultTests : IDisposable
         ReplayResult result = replay.Into(store);
         Assert.Equal(replay.Undisturbed().Bytes, result.Snapshot.Bytes);
         Assert.Equal(StoredReplay.Records / 100, Assert.Single(store.RefusedByReason(Assert.Single(store.Runs()).Identity)).Value);
+    }
+
+    /// <summary>The program itself, on a disk that takes only so much of a file: what is there stays whole, and it goes on from there.</summary>
+    [Fact]
+    public void Replay_WhereTheDiskFails_SaysSoInOneLineAndGoesOnLater()
+    {
+        if (OperatingSystem.IsWindows())
+        {
+            return;
+        }
+
+        using StoredReplay replay = new();
+        string store = $"sqlite:{_place.DatabaseFile}";
+        _place.Open().Dispose();
+        long limit = (new FileInfo(_place.DatabaseFile).Length / 1024) + 200;
+
+        ProgramRun stopped;
+        using (EvenhandProcess process = EvenhandProcess.StartWithFileLimit((int)limit, ["replay", .. replay.Arguments(store)]))
+        {
+            stopped = process.Finish();
+        }
+
+        Assert.Equal((3, ""), (stopped.ExitCode, stopped.Out));
+        Assert.StartsWith($"evenhand: store {store}: the disk failed (", Assert.Single(stopped.ErrorLines), StringComparison.Ordinal);
+        Assert.Equal("ok", _place.Scalar<string>("PRAGMA integrity_check"));
+        Assert.Equal(0, _place.Scalar<long>("SELECT count(*) FROM snapshot"));
+
+        ProgramRun later = ProgramRun.Replay([.. replay.Arguments(store), "--json"]);
+        Assert.Equal(0, later.ExitCode);
+        Assert.Contains("an unfinished run goes on after ", later.Error, StringComparison.Ordinal);
+        Assert.Equal(replay.Undisturbed().Bytes, Encoding.UTF8.GetBytes(later.Out.TrimEnd('\n')));
     }
 
     private static void LimitPages(SqliteStore store, int more)

@@ -52,7 +52,7 @@ internal class SqliteEvidence : IEvidenceStore
     }
 
     /// <inheritdoc/>
-    public ChainHead Head() => Run(() => Connection.QuerySingle<ChainHead>("SELECT sequence AS Sequence, sha256 AS Sha256 FROM chain_head"));
+    public ChainHead Head() => Run(() => StoredHead());
 
     /// <inheritdoc/>
     public IReadOnlyList<SnapshotEntry> Snapshots() => Run(() => (IReadOnlyList<SnapshotEntry>)[.. Connection.Query<SnapshotRow>(
@@ -108,6 +108,11 @@ internal class SqliteEvidence : IEvidenceStore
             Connection.Dispose();
         }
     }
+
+    /// <summary>The head as stored.</summary>
+    protected ChainHead StoredHead(SqliteTransaction? transaction = null) =>
+        Connection.QuerySingleOrDefault<ChainHead>("SELECT sequence AS Sequence, sha256 AS Sha256 FROM chain_head", transaction: transaction)
+        ?? throw SqliteFaults.Damage(File, "the head of the chain is missing");
 
     private T Run<T>(Func<T> work) => SqliteFaults.Run(File, work);
 

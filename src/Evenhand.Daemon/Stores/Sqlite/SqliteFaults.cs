@@ -42,13 +42,19 @@ internal static class SqliteFaults
         {
             IsDamage = true,
         },
-        SQLITE_CORRUPT => new StoreException($"store sqlite:{file}: the file is damaged ({e.Message}); restore it from a backup", e)
-        {
-            IsDamage = true,
-        },
+        SQLITE_CORRUPT => Damage(file, e.Message, e),
         SQLITE_CANTOPEN => new StoreException($"store sqlite:{file}: cannot be opened; check that its folder exists and may be written", e),
         SQLITE_READONLY or SQLITE_PERM => new StoreException($"store sqlite:{file}: cannot be written; check the rights on the file and its folder", e),
-        SQLITE_IOERR => new StoreException($"store sqlite:{file}: the disk failed ({e.Message}); check it and run again", e) { CanRetry = true },
-        _ => new StoreException($"store sqlite:{file}: {e.Message}", e),
+        SQLITE_IOERR => new StoreException($"store sqlite:{file}: the disk failed ({Words(e)}); check it and run again", e) { CanRetry = true },
+        _ => new StoreException($"store sqlite:{file}: {Words(e)}", e),
     };
+
+    /// <summary>The file's own structure is damaged.</summary>
+    public static StoreException Damage(string file, string found, Exception? cause = null) =>
+        new($"store sqlite:{file}: the file is damaged ({Words(found)}); restore it from a backup, or replay into an empty one", cause) { IsDamage = true };
+
+    private static string Words(SqliteException e) => Words(e.Message);
+
+    // SQLite quotes statements as they stand, line ends and all.
+    private static string Words(string message) => string.Join(' ', message.Split((char[]?)null, StringSplitOptions.RemoveEmptyEntries));
 }

@@ -107,7 +107,7 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
         ArgumentNullException.ThrowIfNull(seal);
         return InTransaction(transaction =>
         {
-            ChainHead head = Connection.QuerySingle<ChainHead>("SELECT sequence AS Sequence, sha256 AS Sha256 FROM chain_head", transaction: transaction);
+            ChainHead head = HeadToBuildOn(transaction);
             SealedSnapshot snapshot = seal(head.Sequence + 1, head.Sha256);
             Append(snapshot, head.Sha256, transaction);
             int changed = Connection.Execute(
@@ -165,6 +165,7 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
 
     private StoredRun Resumed(RunRow row, string identity, string charter, SqliteTransaction transaction)
     {
+        RefuseDamage(transaction);
         Connection.Execute("UPDATE run SET epoch = epoch + 1 WHERE id = @Id", new { row.Id }, transaction);
         ShardHeader? header = row.Header is null ? null : ShardHeader.FromBytes(row.Header);
         AddLog(row.Id, new RunLogEntry(header?.Counts.Read ?? 0, RunLogKind.Resumed, Body(("version", ProgramVersion.Text))), transaction);
@@ -184,6 +185,19 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
             ExpectedOffsets = row.NextOffsets,
             Position = header?.Counts.Read ?? 0,
         };
+    }
+
+    /// <summary>Damage to an index hides rows without an error, so whoever builds on what is stored has the tables of runs checked.</summary>
+    private void RefuseDamage(SqliteTransaction transaction)
+    {
+        foreach (string table in (string[])["run", "bucket", "recent_ids", "rejected", "run_log"])
+        {
+            string found = Connection.QueryFirst<string>($"PRAGMA integrity_check({table})", transaction: transaction);
+            if (found != "ok")
+            {
+                throw SqliteFaults.Damage(File, found);
+            }
+        }
     }
 
     /// <summary>The fence: only the run's last opener, and only where it left off. The header goes with it.</summary>
@@ -243,6 +257,14 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
         "INSERT INTO rejected (run, input, position, reason, bytes) VALUES (@run, @input, @position, @reason, @bytes)",
         commit.Refused.Select(r => new { run = run.Number, input = r.Input, position = r.Position, reason = r.Reason, bytes = r.Bytes }),
         transaction);
+
+    private ChainHead HeadToBuildOn(SqliteTransaction transaction)
+    {
+        ChainHead head = StoredHead(transaction);
+        ChainHead last = Connection.QuerySingleOrDefault<ChainHead>("SELECT sequence AS Sequence, sha256 AS Sha256 FROM snapshot ORDER BY sequence DESC LIMIT 1", transaction: transaction)
+            ?? new ChainHead(0, SnapshotSeal.Genesis);
+        return head == last ? head : throw SqliteFaults.Damage(File, "the head of the chain is not its last snapshot");
+    }
 
     private void Append(SealedSnapshot snapshot, string previous, SqliteTransaction transaction)
     {
