@@ -9,14 +9,23 @@ internal static class Program
             case "decode":
                 DecodeBenchmark.Run(Records(args));
                 return 0;
+            case "circuit":
+                CircuitBenchmark.Run();
+                return 0;
+            case "density":
+                DensityBenchmark.Run(args.Length > 1 ? Records(args) : 16);
+                return 0;
             case "replay":
                 ReplayBenchmark.Run(Records(args));
+                return 0;
+            case "snapshot":
+                SnapshotBenchmark.Run(args.Length > 1 ? Records(args) : 1_000);
                 return 0;
             case "tick":
                 TickBenchmark.Run();
                 return 0;
             default:
-                Console.Error.WriteLine("usage: decode [RECORDS] | replay [RECORDS] | tick");
+                Console.Error.WriteLine("usage: circuit | decode [RECORDS] | density [PROFILES] | replay [RECORDS] | snapshot [RECORDS] | tick");
                 return 2;
         }
     }

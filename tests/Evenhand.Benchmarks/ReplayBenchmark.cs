@@ -77,7 +77,7 @@ internal static class ReplayBenchmark
         Console.WriteLine(string.Create(CultureInfo.InvariantCulture, $"allocated {each:0.0} bytes a record after {from:N0} (buckets and remembered ids; decoding alone allocates none)"));
     }
 
-    private static void Write(string file, int records)
+    public static void Write(string file, int records)
     {
         Random random = new(1);
         using StreamWriter writer = new(file);
@@ -97,7 +97,7 @@ internal static class ReplayBenchmark
         }
     }
 
-    private static string CharterText() => string.Join(
+    public static string CharterText() => string.Join(
         '\n',
         [
             "charter: flood-grants",

@@ -21,6 +21,7 @@ internal sealed partial class CommandLine(IServiceProvider services)
         RootCommand root = new("Watches the decisions that an automated system makes about people: rates, gaps, what is certain and what is not, with evidence that anyone can verify.");
         root.Subcommands.Add(CheckCommand.Create(services));
         root.Subcommands.Add(ReplayCommand.Create(services));
+        root.Subcommands.Add(LearnCommand.Create(services));
         root.Subcommands.Add(EvidenceCommand.Create(services));
         root.Subcommands.Add(SchemaCommand.Create(services));
         return root;
@@ -33,9 +34,11 @@ internal sealed partial class CommandLine(IServiceProvider services)
         ParseResult parsed = Root().Parse(args);
         if (parsed.Errors.Count > 0 && parsed.Action is not System.CommandLine.Help.HelpAction)
         {
-            // Where only some words are allowed, the parser's message lists them one a line.
-            string message = string.Join(' ', parsed.Errors[0].Message.Split((char[]?)null, StringSplitOptions.RemoveEmptyEntries));
-            return Fail(2, $"{message.TrimEnd('.')}; see {PathOf(parsed.CommandResult)} --help");
+            // An unknown word says more than the command that is missing because of it; a failure is one line.
+            string problem = parsed.UnmatchedTokens.Count > 0 && parsed.CommandResult.Command is RootCommand
+                ? $"{parsed.UnmatchedTokens[0]} is no command"
+                : parsed.Errors[0].Message.ReplaceLineEndings(" ").Replace("\t", "", StringComparison.Ordinal).TrimEnd('.', ' ');
+            return Fail(2, $"{problem}; see {PathOf(parsed.CommandResult)} --help");
         }
 
         try

@@ -180,7 +180,7 @@ internal sealed class EvidenceCommand
         }
         catch (ArgumentException e)
         {
-            throw new CommandFailure(2, e.Message.Split(" (Parameter")[0]);
+            throw new CommandFailure(2, $"--head {head}: {e.Message.Split(" (Parameter")[0]}");
         }
     }
 
@@ -215,30 +215,25 @@ internal sealed class EvidenceCommand
     private int Export(ParseResult parsed)
     {
         using IEvidenceSource source = Open(parsed);
-        using Stream to = OpenOut(parsed.GetValue(_out));
-        foreach (byte[] document in source.Documents())
+        if (parsed.GetValue(_out) is { } path)
         {
-            to.Write(parsed.GetValue(_withoutState) ? EvidenceDocument.WithoutState(document, source.Name) : document);
-            to.Write("\n"u8);
+            using OutputFile file = OutputFile.Open("--out", path, [parsed.GetValue(_file), .. StoreOption.FilesOf(parsed.GetValue(_store))]);
+            Write(source, file.Stream, parsed.GetValue(_withoutState));
+            file.Complete();
+            return 0;
         }
 
+        using Stream stdout = _terminal.OpenOut();
+        Write(source, stdout, parsed.GetValue(_withoutState));
         return 0;
     }
 
-    private Stream OpenOut(string? file)
+    private static void Write(IEvidenceSource source, Stream to, bool withoutState)
     {
-        if (file is null)
+        foreach (byte[] document in source.Documents())
         {
-            return _terminal.OpenOut();
-        }
-
-        try
-        {
-            return File.Create(file);
-        }
-        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
-        {
-            throw new CommandFailure(3, $"{file}: cannot be written ({e.Message})");
+            to.Write(withoutState ? EvidenceDocument.WithoutState(document, source.Name) : document);
+            to.Write("\n"u8);
         }
     }
 

@@ -67,20 +67,24 @@ internal sealed class ReplayCommand
             Store = parsed.GetValue(_store),
             Outcomes = parsed.GetValue(_outcomes),
             SigningKey = key,
-            BatchSize = Math.Clamp(parsed.GetValue(_batchSize), 1, 1 << 20),
-            CommitEvery = Math.Clamp(parsed.GetValue(_commitEvery), 1, 1 << 20),
+            BatchSize = Math.Min(AtLeastOne(_batchSize, parsed), AtLeastOne(_commitEvery, parsed)),
+            CommitEvery = AtLeastOne(_commitEvery, parsed),
         };
         Check(charter, request);
+        string?[] inUse =
+        [
+            request.Charter, .. request.Inputs, request.Outcomes, LabelsFile.PathOf(request.Charter, charter.LabelFeed?.File),
+            parsed.GetValue(_signingKey), .. StoreOption.FilesOf(request.Store),
+        ];
+        using OutputFile? file = parsed.GetValue(_out) is { } path ? OutputFile.Open("--out", path, inUse) : null;
         ReplayResult result = Replay(charter, request);
         foreach (string remark in result.Remarks)
         {
             _terminal.Error.WriteLine($"evenhand: {remark}");
         }
 
-        if (parsed.GetValue(_out) is { } file)
-        {
-            Write(file, result.Snapshot.Bytes);
-        }
+        file?.Stream.Write(result.Snapshot.Bytes);
+        file?.Complete();
 
         JsonObject document = JsonNode.Parse(result.Snapshot.Bytes)!.AsObject();
         Print(result.Snapshot.Bytes, document, parsed.GetValue(_json));
@@ -136,11 +140,15 @@ internal sealed class ReplayCommand
             throw new CommandFailure(2, "- (stdin) can be read only once");
         }
 
-        if (charter.LabelFeed is not null)
+        if (charter.LabelFeed?.Topic is { } topic)
         {
-            throw new CommandFailure(2, "the charter takes group labels from elsewhere (`labels`), which replay does not read yet: join them into the records first");
+            throw new CommandFailure(2, $"the charter takes group labels from the topic {topic}, which replay does not read: write them to a file and name it under labels: file");
         }
     }
+
+    private static int AtLeastOne(Option<int> option, ParseResult parsed) => parsed.GetValue(option) is var value && value is >= 1 and <= 1 << 20
+        ? value
+        : throw new CommandFailure(2, $"{option.Name} {value}: give a whole number from 1 to {1 << 20}");
 
     private static long? AsOf(string? text)
     {
@@ -149,9 +157,9 @@ internal sealed class ReplayCommand
             return null;
         }
 
-        return TimeParser.TryParseRfc3339(Encoding.UTF8.GetBytes(text), out long asOf)
+        return TimeParser.TryParseRfc3339(Encoding.UTF8.GetBytes(text), out long asOf) && EventTimeRange.Contains(asOf)
             ? asOf
-            : throw new CommandFailure(2, $"--as-of {text}: not a time by RFC 3339; write it such as 2031-04-01T06:00:00Z");
+            : throw new CommandFailure(2, $"--as-of {text}: not a time by RFC 3339 in the years 1000 to 8999; write it such as 2031-04-01T06:00:00Z");
     }
 
     private static ECDsa? SigningKey(string? file)
@@ -165,23 +173,14 @@ internal sealed class ReplayCommand
         try
         {
             key.ImportFromPem(File.ReadAllText(file));
+
+            // A public key alone is read as well, and fails only here.
+            key.SignHash(new byte[32]);
             return key.KeySize == 256 ? key : throw new CommandFailure(2, $"{file}: a key of {key.KeySize} bits; sign with one on the curve P-256");
         }
         catch (Exception e) when (e is IOException or UnauthorizedAccessException or ArgumentException or CryptographicException)
         {
             throw new CommandFailure(2, $"{file}: not a readable ECDSA private key in PEM; make one with: openssl ecparam -genkey -name prime256v1 -noout");
-        }
-    }
-
-    private static void Write(string file, byte[] bytes)
-    {
-        try
-        {
-            File.WriteAllBytes(file, bytes);
-        }
-        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
-        {
-            throw new CommandFailure(3, $"{file}: cannot be written ({e.Message})");
         }
     }
 

@@ -13,6 +13,14 @@ internal static class StoreOption
     /// <exception cref="CommandFailure">Not the URL of a store that this version knows.</exception>
     public static IEvidenceStore OpenReadOnly(string url) => Parse(url).OpenReadOnly();
 
+    /// <summary>The files that a store keeps; none without one.</summary>
+    /// <exception cref="CommandFailure">Not the URL of a store that this version knows.</exception>
+    public static IEnumerable<string> FilesOf(string? url)
+    {
+        string? file = url is null ? null : Parse(url).File;
+        return file is null ? [] : [file, file + "-wal", file + "-shm", file + "-lock", file + "-journal"];
+    }
+
     private static StoreUrl Parse(string url)
     {
         try

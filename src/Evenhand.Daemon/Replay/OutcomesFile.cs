@@ -32,7 +32,7 @@ internal sealed class OutcomesFile
         {
             batch.Clear();
             more = file.Fill(batch);
-            outcomes.Add(batch, path, remark);
+            outcomes.Add(batch, path, file.PlaceOf, remark);
         }
 
         outcomes.Sha256 = file.Sha256;
@@ -50,7 +50,7 @@ internal sealed class OutcomesFile
         Index.Duplicates,
         _rejected);
 
-    private void Add(RecordBatch batch, string path, Action<string> remark)
+    private void Add(RecordBatch batch, string path, Func<long, string> placeOf, Action<string> remark)
     {
         Index.Add(batch);
         for (int i = 0; i < batch.Count; i++)
@@ -58,7 +58,7 @@ internal sealed class OutcomesFile
             _read++;
             if (batch.Rejected[i] != RejectReason.None && _rejected++ == 0)
             {
-                remark($"the first outcome refused is {path}:{batch.Positions[i] + 1}, as {batch.Rejected[i].Name()}");
+                remark($"the first outcome refused is {path}{placeOf(batch.Positions[i])}, as {batch.Rejected[i].Name()}");
             }
         }
     }

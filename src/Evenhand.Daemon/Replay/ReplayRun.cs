@@ -18,6 +18,8 @@ internal sealed class ReplayRun
     private readonly SumLayout _layout;
     private readonly IReplayProgress? _progress;
     private readonly TimeProvider _clock;
+    private readonly string? _labelsPath;
+    private Func<long, string> _placeOf = position => $":{position + 1}";
     private readonly List<string> _remarks = [];
     private readonly List<string> _hashes = [];
     private readonly Dictionary<string, RefusalSample> _refusals = [];
@@ -29,6 +31,7 @@ internal sealed class ReplayRun
         _clock = clock;
         _progress = progress;
         _layout = new SumLayout(charter);
+        _labelsPath = LabelsFile.PathOf(request.Charter, charter.LabelFeed?.File);
         if (charter.Circuit is not null || charter.Rules.Count > 0)
         {
             Remark("the charter's circuit and rule are checked but not used in this version: modelled readings and flip risk are absent");
@@ -40,10 +43,11 @@ internal sealed class ReplayRun
     {
         IdHasher hasher = new(new byte[IdHasher.KeyLength]);
         OutcomesFile? outcomes = LoadOutcomes(hasher);
-        Shard shard = NewShard(outcomes);
+        LabelsFile? labels = LoadLabels(hasher);
+        Shard shard = NewShard(outcomes, labels);
         ReadInputs(shard, hasher, knownHashes: null, journal: null);
-        string identity = RunIdentity.Of(_charter.Sha256, _hashes, _request.AsOf, outcomes?.Sha256);
-        SealedSnapshot snapshot = Seal(shard, outcomes, identity)(1, SnapshotSeal.Genesis);
+        string identity = RunIdentity.Of(_charter.Sha256, _hashes, _request.AsOf, outcomes?.Sha256, labels?.Sha256);
+        SealedSnapshot snapshot = Seal(shard, outcomes, labels, identity)(1, SnapshotSeal.Genesis);
         return new ReplayResult(snapshot, IsRepeated: false, Remarks());
     }
 
@@ -52,7 +56,8 @@ internal sealed class ReplayRun
     {
         List<string> hashes = [.. _request.Inputs.Select(RecordFile.HashOf)];
         string? outcomesHash = _request.Outcomes is null ? null : RecordFile.HashOf(_request.Outcomes);
-        string identity = RunIdentity.Of(_charter.Sha256, hashes, _request.AsOf, outcomesHash);
+        string? labelsHash = _labelsPath is null ? null : RecordFile.HashOf(_labelsPath);
+        string identity = RunIdentity.Of(_charter.Sha256, hashes, _request.AsOf, outcomesHash, labelsHash);
         Stores.StoredRun run = store.OpenRun(identity, _charter.Id);
         if (run.Snapshot is not null)
         {
@@ -61,7 +66,8 @@ internal sealed class ReplayRun
 
         IdHasher hasher = new(run.IdKey);
         OutcomesFile? outcomes = LoadOutcomes(hasher);
-        Shard shard = NewShard(outcomes);
+        LabelsFile? labels = LoadLabels(hasher);
+        Shard shard = NewShard(outcomes, labels);
         if (run.Header is not null)
         {
             shard.Load(run.Header, run.Buckets, run.Ids, run.FoundOutcomes);
@@ -71,16 +77,19 @@ internal sealed class ReplayRun
         using RunJournal journal = new(store, run);
         ReadInputs(shard, hasher, hashes, journal);
         journal.Add(shard.Commit());
-        SealedSnapshot snapshot = journal.Finish(Seal(shard, outcomes, identity));
+        SealedSnapshot snapshot = journal.Finish(Seal(shard, outcomes, labels, identity));
         return new ReplayResult(snapshot, IsRepeated: false, Remarks());
     }
 
     private OutcomesFile? LoadOutcomes(IdHasher hasher) =>
         _request.Outcomes is null ? null : OutcomesFile.Load(_request.Outcomes, _layout, hasher, Remark);
 
+    private LabelsFile? LoadLabels(IdHasher hasher) =>
+        _labelsPath is null ? null : LabelsFile.Load(_labelsPath, _layout, hasher, Remark);
+
     private void Remark(string remark) => _remarks.Add(remark);
 
-    private Shard NewShard(OutcomesFile? outcomes) => new(
+    private Shard NewShard(OutcomesFile? outcomes, LabelsFile? labels) => new(
         _layout,
         _request.Inputs.Count,
         new ShardOptions
@@ -89,7 +98,8 @@ internal sealed class ReplayRun
             Lateness = _charter.Lateness?.Microseconds,
             Ahead = _charter.Ahead?.Microseconds,
         },
-        outcomes?.Index);
+        outcomes?.Index,
+        labels?.Index);
 
     private void ReadInputs(Shard shard, IdHasher hasher, List<string>? knownHashes, RunJournal? journal)
     {
@@ -98,6 +108,7 @@ internal sealed class ReplayRun
         for (int input = 0; input < _request.Inputs.Count; input++)
         {
             using RecordFile file = RecordFile.Open(_request.Inputs[input], _charter, _layout.Records, hasher, RecordKind.Decision);
+            _placeOf = file.PlaceOf;
             if (_request.AsOf is { } asOf)
             {
                 file.DefaultTime = asOf - 1;
@@ -161,7 +172,8 @@ internal sealed class ReplayRun
         {
             if (!_refusals.TryGetValue(entry.Reason, out RefusalSample? sample))
             {
-                sample = new RefusalSample($"{(_request.Inputs[entry.Input] == "-" ? "stdin" : _request.Inputs[entry.Input])}:{entry.Position + 1}");
+                string name = _request.Inputs[entry.Input] == "-" ? "stdin" : _request.Inputs[entry.Input];
+                sample = new RefusalSample($"{name}{_placeOf(entry.Position)}");
                 _refusals.Add(entry.Reason, sample);
             }
 
@@ -175,7 +187,7 @@ internal sealed class ReplayRun
         .. _refusals.OrderByDescending(r => r.Value.Count).Select(r => $"{r.Value.Count:N0} refused as {r.Key}, the first at {r.Value.First}"),
     ];
 
-    private Func<long, string, SealedSnapshot> Seal(Shard shard, OutcomesFile? outcomes, string identity)
+    private Func<long, string, SealedSnapshot> Seal(Shard shard, OutcomesFile? outcomes, LabelsFile? labels, string identity)
     {
         long asOf = AsOf(shard);
         TickResult tick = new Tick(_layout, [shard]).At(asOf, shard.Counts, withAll: true);
@@ -190,6 +202,7 @@ internal sealed class ReplayRun
             Counts = shard.Counts,
             Sources = [.. _request.Inputs.Select((path, i) => new SnapshotSource($"file:{NameOf(path)}", 0, shard.NextOffsets[i]))],
             Outcomes = outcomes?.CountsOf(shard.Counts),
+            Labels = labels?.CountsOf(shard.Counts),
             EvictedIds = shard.EvictedIds,
         };
         JsonObject document = SnapshotBuilder.Build(content);

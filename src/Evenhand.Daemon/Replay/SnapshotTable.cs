@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Text.Json.Nodes;
+using Evenhand.Daemon.Hosting;
 using Spectre.Console;
 
 namespace Evenhand.Daemon.Replay;
@@ -12,6 +13,8 @@ internal static class SnapshotTable
     private const string Caution =
         "A gap is a signal to investigate, not proof of unlawful discrimination; its absence is no clearance. Local law and licensed professionals decide.";
 
+    private static readonly string[] Shown = ["selection_rate", "selection_rate_gap", "impact_ratio", "missing_rate", "unlisted_rate"];
+
     private static readonly string[] AlertKeys = ["measure", "window", "grouping", "group", "field"];
 
     /// <summary>Writes the tables.</summary>
@@ -19,25 +22,27 @@ internal static class SnapshotTable
     {
         IAnsiConsole console = AnsiConsole.Create(new AnsiConsoleSettings
         {
-            Out = new AnsiConsoleOutput(to),
+            Out = new AnsiConsoleOutput(new PrintableWriter(to)),
             Ansi = AnsiSupport.No,
             ColorSystem = ColorSystemSupport.NoColors,
             Interactive = InteractionSupport.No,
         });
         console.Profile.Width = Width;
         Head(snapshot, console);
-        JsonArray readings = snapshot["readings"]!.AsArray();
+        JsonNode[] readings = [.. snapshot["readings"]!.AsArray().Where(r => r!["slice"] is null).Select(r => r!)];
+        ILookup<string, JsonNode> byWindow = readings.ToLookup(r => (string)r["window"]!);
         foreach ((string window, string title) in Windows(snapshot))
         {
             console.WriteLine();
             console.WriteLine(title);
-            foreach (string grouping in Groupings(readings, window))
+            foreach (IGrouping<string, JsonNode> grouping in byWindow[window].Where(r => r["grouping"] is not null).GroupBy(r => (string)r["grouping"]!))
             {
-                console.Write(GroupTable(readings, window, grouping));
+                console.Write(GroupTable([.. grouping], grouping.Key));
             }
         }
 
         Absences(readings, console);
+        FurtherMeasures(snapshot, readings, console);
         Alerts(snapshot, console);
         console.WriteLine();
         console.WriteLine(Caution);
@@ -70,14 +75,9 @@ internal static class SnapshotTable
         }
     }
 
-    private static IEnumerable<string> Groupings(JsonArray readings, string window) => readings
-        .Where(r => (string?)r!["window"] == window && r["grouping"] is not null)
-        .Select(r => (string)r!["grouping"]!)
-        .Distinct();
-
-    private static Table GroupTable(JsonArray readings, string window, string grouping)
+    private static Table GroupTable(List<JsonNode> rows, string grouping)
     {
-        List<JsonNode> rows = [.. readings.Where(r => (string?)r!["window"] == window && (string?)r["grouping"] == grouping && r["slice"] is null).Select(r => r!)];
+        ILookup<string?, JsonNode> byGroup = rows.ToLookup(r => (string?)r["group"]);
         string? reference = (string?)rows.FirstOrDefault(r => r["reference"] is not null)?["reference"];
         bool areLabelsMissing = rows.Exists(r => (string?)r["basis"] == "bounds" && Number(r["low"]) < Number(r["high"]));
         Table table = new Table().Border(TableBorder.Simple).AddColumns(Markup.Escape(grouping), "decided", "favourable", "rate, %");
@@ -91,7 +91,7 @@ internal static class SnapshotTable
         table.Columns[1].Alignment = table.Columns[2].Alignment = Justify.Right;
         foreach (JsonNode rate in rows.Where(r => (string?)r["measure"] == "selection_rate" && (string?)r["basis"] == "observed" && !IsEmptySet(r)))
         {
-            table.AddRow([.. GroupRow(rows, rate, reference, areLabelsMissing)]);
+            table.AddRow([.. GroupRow(byGroup[(string?)rate["group"]], rate, reference, areLabelsMissing)]);
         }
 
         return table;
@@ -101,11 +101,11 @@ internal static class SnapshotTable
     private static bool IsEmptySet(JsonNode rate) =>
         rate["cell"] is null && (rate["suppressed"] is not null || Count(rate["count"]) == 0);
 
-    private static IEnumerable<string> GroupRow(List<JsonNode> rows, JsonNode rate, string? reference, bool areLabelsMissing)
+    private static IEnumerable<string> GroupRow(IEnumerable<JsonNode> rows, JsonNode rate, string? reference, bool areLabelsMissing)
     {
         string group = (string)rate["group"]!;
         JsonNode? Find(string measure, string basis) =>
-            rows.FirstOrDefault(r => (string?)r["measure"] == measure && (string?)r["basis"] == basis && (string?)r["group"] == group);
+            rows.FirstOrDefault(r => (string?)r["measure"] == measure && (string?)r["basis"] == basis);
         bool isWithheld = rate["suppressed"] is not null;
         yield return Markup.Escape(group);
         yield return isWithheld ? "withheld" : string.Create(CultureInfo.InvariantCulture, $"{Count(rate["count"]):N0}");
@@ -118,13 +118,13 @@ internal static class SnapshotTable
         }
 
         yield return Find("impact_ratio", "observed") is { } ratio ? Cell(ratio, v => v.ToString("0.000", CultureInfo.InvariantCulture)) : "";
-        yield return string.Join(", ", rows.Where(r => (string?)r["group"] == group && r["state"] is not null).Select(r => State((string)r["state"]!)).Distinct());
+        yield return string.Join(", ", rows.Where(r => r["state"] is not null).Select(r => State((string)r["state"]!)).Distinct());
     }
 
-    private static void Absences(JsonArray readings, IAnsiConsole console)
+    private static void Absences(JsonNode[] readings, IAnsiConsole console)
     {
         string? window = (string?)readings.LastOrDefault()?["window"];
-        List<JsonNode> rows = [.. readings.Where(r => (string?)r!["window"] == window && r["grouping"] is null && r["slice"] is null && r["field"] is not null && Number(r["value"]) > 0).Select(r => r!)];
+        List<JsonNode> rows = [.. readings.Where(r => (string?)r["window"] == window && r["grouping"] is null && r["field"] is not null && Number(r["value"]) > 0)];
         if (rows.Count == 0)
         {
             return;
@@ -141,6 +141,18 @@ internal static class SnapshotTable
         console.Write(table);
     }
 
+    /// <summary>Names what is measured but not in the tables, so that nobody takes it for missing.</summary>
+    private static void FurtherMeasures(JsonObject snapshot, JsonNode[] readings, IAnsiConsole console)
+    {
+        string[] measures = [.. readings.Select(r => (string)r["measure"]!).Distinct().Where(m => !Shown.Contains(m))];
+        bool hasSlices = snapshot["readings"]!.AsArray().Any(r => r!["slice"] is not null);
+        if (measures.Length > 0)
+        {
+            console.WriteLine();
+            console.WriteLine($"Also measured, in the snapshot (--out, --json): {string.Join(", ", measures)}{(hasSlices ? "; everything by slice as well" : "")}.");
+        }
+    }
+
     private static void Alerts(JsonObject snapshot, IAnsiConsole console)
     {
         JsonArray alerts = snapshot["alerts"]!.AsArray();
@@ -151,7 +163,8 @@ internal static class SnapshotTable
             // One line an alert: what is judged, the number with its ends, the limit, and what a person should know.
             string what = string.Join(' ', AlertKeys.Select(k => (string?)alert![k]).Where(t => t is not null));
             string limit = Limit(alert!) is { } l ? $", limit {l}" : "";
-            string value = alert!["value"] is { } v ? $": {Number(v):0.####}{Ends(alert)}{limit}" : "";
+            string changed = (string?)alert!["kind"] == "shift" ? "changed by " : "";
+            string value = alert["value"] is { } v ? $": {changed}{Number(v):0.####}{Ends(alert)}{(changed.Length > 0 ? " against the baseline" : "")}{limit}" : "";
             string note = alert["note"] is { } text ? $" ({text})" : "";
             console.WriteLine($"  {alert["severity"]} {alert["alert"]}{(what.Length > 0 ? $": {what}" : "")}{value}{note}");
         }

@@ -53,6 +53,8 @@ internal sealed class CsvFile : RecordFile
         ? $"{Name} grew while it was read: the first {_raw.Limit:N0} bytes were used"
         : null;
 
+    public override string PlaceOf(long position) => FormattableString.Invariant($" row {position + 1}");
+
     public override bool Fill(RecordBatch batch)
     {
         while (!batch.IsFull)

@@ -60,6 +60,8 @@ internal sealed class ParquetFile : RecordFile
 
     public override string Sha256 => _raw.Sha256;
 
+    public override string PlaceOf(long position) => FormattableString.Invariant($" row {position + 1}");
+
     public override bool Fill(RecordBatch batch)
     {
         while (!batch.IsFull)

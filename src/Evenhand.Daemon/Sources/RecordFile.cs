@@ -65,6 +65,9 @@ internal abstract class RecordFile : IDisposable
         }
     }
 
+    /// <summary>Where an entry stands, for messages: after the file's name.</summary>
+    public virtual string PlaceOf(long position) => FormattableString.Invariant($":{position + 1}");
+
     /// <summary>Adds entries until the batch is full or the input ends; false when there is nothing more.</summary>
     public abstract bool Fill(RecordBatch batch);
 
@@ -98,10 +101,15 @@ internal abstract class RecordFile : IDisposable
             ".CSV" or ".TSV" => new CsvFile(raw, content, decoding, name) { Name = name },
             ".PARQUET" => new ParquetFile(raw, isGzip ? content : null, path, decoding, name) { Name = name },
             _ when head.StartsWith("PAR1"u8) => new ParquetFile(raw, null, path, decoding, name) { Name = name },
+            _ when HasColumnsOnly(decoding.Charter) && !IsJson(head) => new CsvFile(raw, content, decoding, name) { Name = name },
             _ when path == "-" || isGzip || IsJson(head) => new JsonLinesFile(raw, content, decoding) { Name = name },
             _ => new CsvFile(raw, content, decoding, name) { Name = name },
         };
     }
+
+    /// <summary>Whether the charter names the decision's place as a column: then what comes without a telling name is a table.</summary>
+    private static bool HasColumnsOnly(Charter charter) =>
+        (charter.Decision?.At ?? (charter.Inputs.Count > 0 ? charter.Inputs[0].At : null))?.Places.All(p => !p.StartsWith('/')) == true;
 
     private static bool IsJson(ReadOnlySpan<byte> head) => head.Trim(" \t\r\n\u00EF\u00BB\u00BF"u8).IsEmpty || head.IndexOf((byte)'{') >= 0;
 }

@@ -24,6 +24,9 @@ public sealed record Judgement
     /// <summary>The reading judged; null where the rule judges none.</summary>
     public Reading? Reading { get; init; }
 
+    /// <summary>The baseline's reading that it is compared with; null where there is none.</summary>
+    public Reading? Before { get; init; }
+
     /// <summary>The number judged, where it is not the reading's own (a shift, a share, seconds of silence).</summary>
     public double? Value { get; init; }
 

@@ -43,6 +43,7 @@ public sealed class ShiftJudge : IRuleJudge
             Severity = rule.Severity,
             Declared = rule,
             Reading = now,
+            Before = before,
             Below = -rule.Shift,
             Above = rule.Shift,
             State = JudgementState.TooFew,

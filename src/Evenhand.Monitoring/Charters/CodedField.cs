@@ -80,5 +80,5 @@ public record CodedField
         return band + 1 < Bands.Count ? $"{low}..{Cut(Bands[band + 1])}" : $"{low}..";
     }
 
-    private static string Cut(double value) => value.ToString("R", CultureInfo.InvariantCulture);
+    private static string Cut(double value) => double.IsInfinity(value) ? "" : value.ToString("R", CultureInfo.InvariantCulture);
 }

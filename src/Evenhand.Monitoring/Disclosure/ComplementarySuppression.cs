@@ -13,35 +13,64 @@ public static class ComplementarySuppression
     /// <summary>Plans which counts to withhold.</summary>
     /// <param name="table">The table.</param>
     /// <returns>The numbers of the counts to withhold, the sensitive ones among them, ascending.</returns>
-    public static IReadOnlyCollection<int> Plan(SuppressionTable table)
+    public static IReadOnlySet<int> Plan(SuppressionTable table) => Plan([table], new HashSet<int>());
+
+    /// <summary>Plans which counts to withhold, the same ones in each of some tables.</summary>
+    /// <remarks>
+    /// Where tables of one shape add up to another of that shape, such as slices, one pattern for all is safe without looking at the
+    /// sums between them: whatever change of the withheld counts agrees with the margins of one table can be carried into the total.
+    /// </remarks>
+    /// <param name="tables">Tables of one shape: the same numbers, exposures and sums; counts and what is sensitive may differ.</param>
+    /// <param name="already">Counts that are withheld in any case.</param>
+    public static IReadOnlySet<int> Plan(IReadOnlyList<SuppressionTable> tables, IReadOnlySet<int> already)
     {
-        ArgumentNullException.ThrowIfNull(table);
-        SortedSet<int> withheld = [.. Enumerable.Range(0, table.Count).Where(i => table.IsSensitive(i) && table.ExposureOf(i) == CellExposure.Published)];
-        while (withheld.Count > 0)
+        ArgumentNullException.ThrowIfNull(tables);
+        ArgumentNullException.ThrowIfNull(already);
+        SortedSet<int> withheld = [.. already];
+        foreach (SuppressionTable table in tables)
         {
-            bool[] known = Known(table, withheld);
-            int[] determined = [.. withheld.Where(i => table.IsSensitive(i) && known[i])];
-            List<int> further = [.. determined.Select(i => Complement(table, i, withheld)).Where(i => i >= 0).Distinct()];
-            if (further.Count == 0)
+            withheld.UnionWith(Enumerable.Range(0, table.Count).Where(i => table.IsSensitive(i) && table.ExposureOf(i) == CellExposure.Published));
+        }
+
+        bool isDone = withheld.Count == 0;
+        while (!isDone)
+        {
+            int before = withheld.Count;
+            foreach (SuppressionTable table in tables)
             {
-                return withheld;
+                int[] further = [.. Exposed(table, withheld, []).Select(i => Complement(table, i, withheld)).Where(i => i >= 0).Distinct()];
+                withheld.UnionWith(further);
             }
 
-            withheld.UnionWith(further);
+            isDone = withheld.Count == before;
         }
 
         return withheld;
     }
 
-    /// <summary>Which counts a reader of what is published can work out.</summary>
-    public static bool[] Known(SuppressionTable table, IReadOnlyCollection<int> withheld)
+    /// <summary>The sensitive counts that a reader can work out although they are withheld.</summary>
+    /// <param name="table">The table.</param>
+    /// <param name="withheld">What is withheld.</param>
+    /// <param name="revealed">Hidden counts that the reader knows nevertheless.</param>
+    public static IReadOnlyList<int> Exposed(SuppressionTable table, IReadOnlySet<int> withheld, IReadOnlyList<int> revealed)
     {
-        ArgumentNullException.ThrowIfNull(table);
         ArgumentNullException.ThrowIfNull(withheld);
-        bool[] known = [.. Enumerable.Range(0, table.Count).Select(i => table.ExposureOf(i) != CellExposure.Hidden)];
-        foreach (int item in withheld)
+        bool[] known = Known(table, withheld, revealed);
+        return [.. withheld.Where(i => table.IsSensitive(i) && known[i])];
+    }
+
+    /// <summary>Which counts a reader of what is published can work out.</summary>
+    private static bool[] Known(SuppressionTable table, IReadOnlySet<int> withheld, IReadOnlyList<int> revealed)
+    {
+        bool[] known = new bool[table.Count];
+        for (int i = 0; i < known.Length; i++)
         {
-            known[item] = false;
+            known[i] = table.ExposureOf(i) != CellExposure.Hidden && !withheld.Contains(i);
+        }
+
+        foreach (int item in revealed)
+        {
+            known[item] = true;
         }
 
         bool isNews = true;
@@ -63,8 +92,20 @@ public static class ComplementarySuppression
         bool isNews = false;
         foreach ((int total, int[] parts) in table.Sums)
         {
-            if (known[total] && parts.Any(p => !known[p])
-                && parts.Where(p => known[p]).Sum(table.CountOf) == table.CountOf(total))
+            if (!known[total])
+            {
+                continue;
+            }
+
+            long sum = 0;
+            bool isOpen = false;
+            foreach (int part in parts)
+            {
+                sum += known[part] ? table.CountOf(part) : 0;
+                isOpen |= !known[part];
+            }
+
+            if (isOpen && sum == table.CountOf(total))
             {
                 foreach (int part in parts)
                 {
@@ -80,20 +121,18 @@ public static class ComplementarySuppression
 
     private static bool FindDetermined(SuppressionTable table, bool[] known)
     {
-        int[] unknown = [.. Enumerable.Range(0, known.Length).Where(i => !known[i])];
-        Dictionary<int, int> column = unknown.Select((item, i) => (item, i)).ToDictionary(p => p.item, p => p.i);
-        LinearSystem system = new(unknown.Length);
+        LinearSystem system = new();
         foreach ((int total, int[] parts) in table.Sums)
         {
             Dictionary<int, long> row = [];
             foreach (int part in parts.Where(p => !known[p]))
             {
-                row[column[part]] = row.GetValueOrDefault(column[part]) - 1;
+                row[part] = row.GetValueOrDefault(part) - 1;
             }
 
             if (!known[total])
             {
-                row[column[total]] = row.GetValueOrDefault(column[total]) + 1;
+                row[total] = row.GetValueOrDefault(total) + 1;
             }
 
             system.Add(row);
@@ -102,7 +141,7 @@ public static class ComplementarySuppression
         bool isNews = false;
         foreach (int determined in system.Determined())
         {
-            known[unknown[determined]] = true;
+            known[determined] = true;
             isNews = true;
         }
 

@@ -1,4 +1,3 @@
-using Evenhand.Monitoring.Charters;
 using Evenhand.Monitoring.Windows;
 
 namespace Evenhand.Monitoring.Disclosure;
@@ -7,145 +6,164 @@ namespace Evenhand.Monitoring.Disclosure;
 /// <remarks>
 /// <para>A group of at least one and fewer than <c>minimum_cell</c> people is withheld, and with it as many others of its window as it
 /// takes that it cannot be worked out from totals, margins of crossed groups and slices. A group of nobody is not shown either, but
-/// nothing is withheld to hide that it is empty.</para>
+/// nothing is withheld to hide that it is empty. The same holds for how many of a group have a known outcome, and a score.</para>
 /// <para>How many labels are missing or unlisted is about the data, not a group of people, and is always published. Windows that
 /// overlap are planned apart: differences between them are not protected.</para>
 /// </remarks>
 public static class DisclosurePlanner
 {
-    // Beyond this, slices are planned one by one: the audit grows with the cube of what is withheld.
+    // Beyond this, slices share one pattern: the audit grows with what is withheld in all of them together.
     private const int MostItemsTogether = 3000;
 
     /// <summary>Plans every window.</summary>
-    public static WithheldCells Plan(SumLayout layout, IReadOnlyList<WindowSums> sums)
+    /// <param name="layout">What stands where.</param>
+    /// <param name="sums">Everything that the snapshot publishes numbers of, baselines under their own names among it.</param>
+    public static WithheldCells Plan(SumLayout layout, IEnumerable<WindowSums> sums)
     {
         ArgumentNullException.ThrowIfNull(layout);
         ArgumentNullException.ThrowIfNull(sums);
         WithheldCells withheld = new(layout.Charter.MinimumCell);
-        if (withheld.Minimum == 0)
+        if (withheld.Minimum > 0)
         {
-            return withheld;
-        }
-
-        int cells = layout.Groupings.Sum(g => g.Cells);
-        foreach (IGrouping<string, WindowSums> window in sums.GroupBy(s => s.Window))
-        {
-            foreach (WindowSums[] together in cells * window.Count() <= MostItemsTogether ? [[.. window]] : window.Chunk(1))
+            foreach (IGrouping<string, WindowSums> window in sums.GroupBy(s => s.Window))
             {
-                new WindowPlan(layout, together, withheld.Minimum).AddTo(withheld);
+                new WindowPlan(layout, [.. window], withheld).Add();
             }
         }
 
         return withheld;
     }
 
-    private sealed class WindowPlan
+    private sealed class WindowPlan(SumLayout layout, WindowSums[] slices, WithheldCells withheld)
     {
-        private readonly SuppressionTable _table = new();
-        private readonly Dictionary<(int Slice, int Shape, int Cell), int> _items = [];
-        private readonly SumLayout _layout;
-        private readonly WindowSums[] _slices;
-        private readonly int _minimum;
+        private readonly bool _isTogether = slices.Length * layout.Groupings.Sum(g => g.Cells) <= MostItemsTogether;
 
-        public WindowPlan(SumLayout layout, WindowSums[] slices, int minimum)
+        /// <summary>Numbers the cells; every table of the window numbers them alike.</summary>
+        private WindowTable? _numbers;
+
+        public void Add()
         {
-            _layout = layout;
-            _slices = slices;
-            _minimum = minimum;
-            for (int s = 0; s < slices.Length; s++)
+            WindowTable[] tables = Tables(new DecidedCount(withheld.Minimum));
+            _numbers = tables[0];
+            IReadOnlySet<int> small = Plan(tables, new HashSet<int>());
+            AddCells(small, WithheldPart.All);
+            AddEmptyGroups();
+            AddKnownShares(tables, small);
+            if (layout.Charter.Outcome is not null)
             {
-                AddSlice(s);
+                AddCells(Plan(Tables(new OutcomeCount(withheld.Minimum)), small), WithheldPart.Outcomes);
             }
 
-            AddSlicesUp();
+            if (layout.Charter.Score is not null)
+            {
+                AddCells(Plan(Tables(new ScoredCount(withheld.Minimum)), small), WithheldPart.Scores);
+            }
+
+            if (layout.Strata > 0)
+            {
+                AddCells(Plan(Tables(new StratumCount(withheld.Minimum)), small), WithheldPart.Strata);
+                AddStrataOfGroups(small);
+            }
         }
 
-        public void AddTo(WithheldCells withheld)
+        /// <summary>One table of all slices, or one of each.</summary>
+        private WindowTable[] Tables(CountRule rule) => _isTogether
+            ? [new WindowTable(layout, slices, rule)]
+            : [.. slices.Select(s => new WindowTable(layout, [s], rule))];
+
+        private static IReadOnlySet<int> Plan(WindowTable[] tables, IReadOnlySet<int> already) =>
+            ComplementarySuppression.Plan([.. tables.Select(t => t.Table)], already);
+
+        private void AddCells(IReadOnlySet<int> items, WithheldPart part)
         {
-            HashSet<int> planned = [.. ComplementarySuppression.Plan(_table)];
-            foreach (((int slice, int shape, int cell), int item) in _items)
+            ForEachCell((slice, g, cell, item) =>
             {
-                if (planned.Contains(item) || IsEmptyGroup(slice, shape, cell))
+                if (items.Contains(item))
                 {
-                    withheld.Add(_slices[slice].Window, _slices[slice].Slice, _layout.Groupings[shape].Name, cell);
+                    withheld.Add(slices[slice].Window, slices[slice].Slice, layout.Groupings[g].Name, cell, part);
+                }
+            });
+        }
+
+        private void AddEmptyGroups()
+        {
+            ForEachCell((slice, g, cell, _) =>
+            {
+                GroupingShape shape = layout.Groupings[g];
+                if (shape.Name is not null && shape.IsListed(cell) && slices[slice].Counts(shape, cell).Decided == 0)
+                {
+                    withheld.Add(slices[slice].Window, slices[slice].Slice, shape.Name, cell);
+                }
+            });
+        }
+
+        private void ForEachCell(Action<int, int, int, int> act)
+        {
+            for (int slice = 0; slice < slices.Length; slice++)
+            {
+                for (int g = 0; g < layout.Groupings.Count; g++)
+                {
+                    for (int cell = 0; cell < layout.Groupings[g].Cells; cell++)
+                    {
+                        act(slice, g, cell, _numbers!.Item(_isTogether ? slice : 0, g, cell));
+                    }
                 }
             }
         }
 
-        private bool IsEmptyGroup(int slice, int shape, int cell) =>
-            _layout.Groupings[shape].Name is not null
-            && _layout.Groupings[shape].IsListed(cell)
-            && _slices[slice].Counts(_layout.Groupings[shape], cell).Decided == 0;
-
-        private void AddSlice(int slice)
+        /// <summary>The share of listed labels tells how many declined; it stays unless that gives a cell away.</summary>
+        private void AddKnownShares(WindowTable[] tables, IReadOnlySet<int> small)
         {
-            for (int g = 0; g < _layout.Groupings.Count; g++)
+            (int Slice, int Grouping)[] shares =
+            [
+                .. Enumerable.Range(0, _isTogether ? slices.Length : 1)
+                    .SelectMany(s => Enumerable.Range(1, layout.Groupings.Count - 1).Select(g => (s, g))),
+            ];
+            if (IsSafe(tables, small, [.. shares.Select(s => tables[0].ListedTotal(s.Slice, s.Grouping))]))
             {
-                GroupingShape shape = _layout.Groupings[g];
-                for (int cell = 0; cell < shape.Cells; cell++)
+                return;
+            }
+
+            List<int> shown = [];
+            foreach ((int slice, int g) in shares)
+            {
+                int item = tables[0].ListedTotal(slice, g);
+                if (IsSafe(tables, small, [.. shown, item]))
                 {
-                    long count = _slices[slice].Counts(shape, cell).Decided;
-                    CellExposure exposure = ExposureOf(shape, cell);
-                    bool isSensitive = exposure == CellExposure.Published && count > 0 && count < _minimum;
-                    _items[(slice, g, cell)] = _table.Add(count, exposure, isSensitive);
-                }
-            }
-
-            for (int g = 1; g < _layout.Groupings.Count; g++)
-            {
-                AddMargins(slice, g);
-            }
-        }
-
-        private static CellExposure ExposureOf(GroupingShape shape, int cell)
-        {
-            if (shape.Groups.Count == 0)
-            {
-                return CellExposure.Required;
-            }
-
-            if (shape.Groups.Count > 1)
-            {
-                return shape.IsListed(cell) ? CellExposure.Published : CellExposure.Hidden;
-            }
-
-            CodedField field = shape.Fields[0];
-            return cell == field.MissingCode || cell == field.UnlistedCode ? CellExposure.Required : CellExposure.Published;
-        }
-
-        /// <summary>A single group adds up to everyone; a crossed one to each grouping over fewer of its groups.</summary>
-        private void AddMargins(int slice, int g)
-        {
-            GroupingShape shape = _layout.Groupings[g];
-            for (int m = 0; m < g; m++)
-            {
-                GroupingShape margin = _layout.Groupings[m];
-                if (margin.Groups.Count >= shape.Groups.Count || margin.Groups.Any(i => !shape.Groups.Contains(i))
-                    || (margin.Groups.Count == 0 && shape.Groups.Count > 1))
-                {
+                    shown.Add(item);
                     continue;
                 }
 
-                int[] places = [.. margin.Groups.Select(i => shape.Groups.ToList().IndexOf(i))];
-                foreach (IGrouping<int, int> same in Enumerable.Range(0, shape.Cells)
-                    .GroupBy(cell => margin.CellOf([.. places.Select(p => shape.CodeOf(cell, p))])))
+                foreach (WindowSums sums in _isTogether ? [slices[slice]] : slices)
                 {
-                    _table.AddSum(_items[(slice, m, same.Key)], same.Select(cell => _items[(slice, g, cell)]));
+                    withheld.Add(sums.Window, sums.Slice, layout.Groupings[g].Name, WithheldCells.WholeGrouping, WithheldPart.KnownShare);
                 }
             }
         }
 
-        /// <summary>The slices of one field add up to all slices together.</summary>
-        private void AddSlicesUp()
+        private static bool IsSafe(WindowTable[] tables, IReadOnlySet<int> small, IReadOnlyList<int> shown) =>
+            small.Count == 0 || tables.All(t => ComplementarySuppression.Exposed(t.Table, small, shown).Count == 0);
+
+        /// <summary>
+        /// Strata of a field that is a group are crossed groups themselves: where any cell of such a grouping is withheld, so are all
+        /// strata, and where one of those has a declined label, so are the readings, whose denominators leave the declined out.
+        /// </summary>
+        private void AddStrataOfGroups(IReadOnlySet<int> small)
         {
-            foreach (IGrouping<string, int> field in Enumerable.Range(0, _slices.Length)
-                .Where(s => _slices[s].Slice is not null)
-                .GroupBy(s => _slices[s].Slice!.Split('=')[0]))
+            HashSet<string> adjusted = [.. layout.Charter.Adjust.Select(a => a.Field)];
+            bool isExposed = false, isDeclined = false;
+            ForEachCell((_, g, cell, item) =>
             {
-                foreach (((int slice, int g, int cell), int item) in _items.Where(i => _slices[i.Key.Slice].Slice is null).ToList())
+                GroupingShape shape = layout.Groupings[g];
+                if (small.Contains(item) && shape.Fields.Any(f => adjusted.Contains(f.Name)))
                 {
-                    _table.AddSum(item, field.Select(s => _items[(s, g, cell)]));
+                    isExposed = true;
+                    isDeclined |= Enumerable.Range(0, shape.Fields.Count).Any(i => shape.CodeOf(cell, i) == shape.Fields[i].DeclinedCode);
                 }
+            });
+            foreach (WithheldPart part in isDeclined ? [WithheldPart.Strata, WithheldPart.Adjusted] : isExposed ? new[] { WithheldPart.Strata } : [])
+            {
+                ForEachCell((slice, g, cell, _) => withheld.Add(slices[slice].Window, slices[slice].Slice, layout.Groupings[g].Name, cell, part));
             }
         }
     }

@@ -80,6 +80,11 @@ public sealed class SelectionMeasures : IMeasureFamily
             row.AddNote(x == 0 ? "neither side has any: the ratio is undefined" : "the reference has none: the ratio is unbounded");
         }
 
+        if (!isEdge && (x == n || xReference == nReference))
+        {
+            row.AddNote("one side is all favourable: the log interval is too narrow, rules judge by the score interval");
+        }
+
         double value = xReference == 0 ? double.NaN : (double)x / n / ((double)xReference / nReference);
         view.SetNumbers(row, value, isEdge ? score : KatzRatio.Of(x, n, xReference, nReference, view.Level));
         row.JudgedLow = score.Low;

@@ -16,10 +16,18 @@ public sealed class FieldCoder
     private readonly double[]? _bands;
     private readonly bool _quantiles;
 
+    private readonly NumberSample? _numbers;
+    private readonly int _index;
+
     /// <summary>Prepares a field's texts.</summary>
-    public FieldCoder(CodedField field)
+    /// <param name="field">The field.</param>
+    /// <param name="numbers">Where its numbers are to be kept; null for nowhere.</param>
+    /// <param name="index">The field's place there.</param>
+    public FieldCoder(CodedField field, NumberSample? numbers = null, int index = 0)
     {
         ArgumentNullException.ThrowIfNull(field);
+        _numbers = numbers;
+        _index = index;
         Missing = checked((ushort)field.MissingCode);
         Unlisted = checked((ushort)field.UnlistedCode);
         _bands = field.Bands is null ? null : [.. field.Bands];
@@ -54,6 +62,11 @@ public sealed class FieldCoder
     /// <summary>The code of a number in a numeric field: its band, or unlisted below the first one and where it is not finite.</summary>
     private ushort Band(double value)
     {
+        if (_numbers is not null)
+        {
+            _numbers[_index] = value;
+        }
+
         if (_bands is null)
         {
             return 0;

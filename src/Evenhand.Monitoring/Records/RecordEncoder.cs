@@ -14,6 +14,7 @@ internal sealed class RecordEncoder
 
     // The slot of a coded field that stands at one place alone, as nearly all do; −1 for others. Null needs no search there.
     private readonly int[] _onlySlots;
+    private readonly bool _isOfCases;
     private readonly ScoreField? _score;
     private readonly TextTable _decisions = new();
     private readonly TextTable _outcomes = new();
@@ -33,8 +34,9 @@ internal sealed class RecordEncoder
         _hasher = hasher;
         _kind = kind;
         _unit = charter.Time?.Unit ?? TimeUnit.Rfc3339;
-        _coders = [.. layout.Fields.Select(field => new FieldCoder(field))];
+        _coders = [.. layout.Fields.Select((field, i) => new FieldCoder(field, layout.Numbers, i))];
         _onlySlots = [.. _places.Fields.Select(range => range.Count == 1 ? _order[range.From] : -1)];
+        _isOfCases = kind == RecordKind.Label && charter.Revision is not null;
         _score = charter.Score;
         Fill(_decisions, charter.Decision?.Favourable, (int)DecisionCode.Favourable);
         Fill(_decisions, charter.Decision?.Unfavourable, (int)DecisionCode.Unfavourable);
@@ -63,7 +65,12 @@ internal sealed class RecordEncoder
             return reason;
         }
 
-        return _kind == RecordKind.Outcome ? EncodeOutcomeRecord(bytes, values, batch) : EncodeDecisionRecord(bytes, values, batch);
+        return _kind switch
+        {
+            RecordKind.Outcome => EncodeOutcomeRecord(bytes, values, batch),
+            RecordKind.Label => EncodeLabelRecord(bytes, values, batch),
+            _ => EncodeDecisionRecord(bytes, values, batch),
+        };
     }
 
     private static void Fill(TextTable table, IReadOnlyList<string>? texts, int code)
@@ -103,22 +110,32 @@ internal sealed class RecordEncoder
         }
 
         OutcomeCode outcome = OutcomeOf(bytes, value);
-        int entry = batch.Count;
-        batch.Outcomes[entry] = outcome;
-        batch.Decisions[entry] = DecisionCode.Other;
-        batch.Scores[entry] = RecordBatch.MissingScore;
-        Span<ushort> codes = batch.CodesOf(entry);
+        SetNoDecision(batch, outcome);
+        Span<ushort> codes = batch.CodesOf(batch.Count);
         for (int field = 0; field < codes.Length; field++)
         {
             codes[field] = _coders[field].Missing;
         }
 
+        return outcome == OutcomeCode.Unknown ? RejectReason.UnknownOutcome : RejectReason.None;
+    }
+
+    private RejectReason EncodeLabelRecord(ReadOnlySpan<byte> bytes, ReadOnlySpan<RecordValue> values, RecordBatch batch)
+    {
+        SetNoDecision(batch, OutcomeCode.Unknown);
+        EncodeFields(bytes, values, batch.CodesOf(batch.Count));
+        return RejectReason.None;
+    }
+
+    private static void SetNoDecision(RecordBatch batch, OutcomeCode outcome)
+    {
+        batch.Outcomes[batch.Count] = outcome;
+        batch.Decisions[batch.Count] = DecisionCode.Other;
+        batch.Scores[batch.Count] = RecordBatch.MissingScore;
         for (int slice = 0; slice < batch.SliceCount; slice++)
         {
             batch.SetSlice(slice, default);
         }
-
-        return outcome == OutcomeCode.Unknown ? RejectReason.UnknownOutcome : RejectReason.None;
     }
 
     private RejectReason EncodeId(ReadOnlySpan<byte> bytes, ReadOnlySpan<RecordValue> values, RecordBatch batch)
@@ -142,7 +159,8 @@ internal sealed class RecordEncoder
 
         if (_places.Revision.Count == 0)
         {
-            batch.Ids[batch.Count] = batch.CaseIds[batch.Count] = _hasher.Hash(id.Of(bytes));
+            // A label names no revision: it is kept under what decisions of a charter with revisions have in common.
+            batch.Ids[batch.Count] = batch.CaseIds[batch.Count] = _isOfCases ? _hasher.Hash(id.Of(bytes), default) : _hasher.Hash(id.Of(bytes));
             return RejectReason.None;
         }
 
@@ -168,10 +186,10 @@ internal sealed class RecordEncoder
 
         if (value.IsPresent && value.Length > 0)
         {
-            return TimeParser.TryParse(value.Of(bytes), _unit, out time) ? RejectReason.None : RejectReason.BadTime;
+            return TimeParser.TryParse(value.Of(bytes), _unit, out time) && EventTimeRange.Contains(time) ? RejectReason.None : RejectReason.BadTime;
         }
 
-        if (_kind == RecordKind.Outcome)
+        if (_kind != RecordKind.Decision)
         {
             time = long.MinValue;
             return RejectReason.None;

@@ -8,4 +8,7 @@ public enum RecordKind
 
     /// <summary>Outcomes that come apart from their decisions: id and outcome; the time is optional, nothing else is read.</summary>
     Outcome = 1,
+
+    /// <summary>Group labels that come apart from their decisions: the id under the feed's <c>join</c>, and labels; the time is optional.</summary>
+    Label = 2,
 }

@@ -6,13 +6,16 @@ namespace Evenhand.Monitoring.Records;
 public sealed class RecordLayout
 {
     /// <summary>Lays out the records of a charter.</summary>
-    public RecordLayout(Charter charter)
+    /// <param name="charter">The charter.</param>
+    /// <param name="collectNumbers">Whether the numbers of numeric fields are to be kept beside their codes, one record at a time.</param>
+    public RecordLayout(Charter charter, bool collectNumbers = false)
     {
         ArgumentNullException.ThrowIfNull(charter);
         Groups = charter.Groups.Count;
         Slices = charter.Slices.Count;
         Fields = [.. charter.Groups, .. charter.Inputs];
         HasScore = charter.Score is not null;
+        Numbers = collectNumbers ? new NumberSample(Fields.Count) : null;
     }
 
     /// <summary>The coded fields: groups first.</summary>
@@ -26,4 +29,7 @@ public sealed class RecordLayout
 
     /// <summary>Whether records carry a score.</summary>
     public bool HasScore { get; }
+
+    /// <summary>The numbers of the record decoded last; null unless they are collected.</summary>
+    public NumberSample? Numbers { get; }
 }

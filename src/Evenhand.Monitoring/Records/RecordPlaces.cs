@@ -12,15 +12,16 @@ internal sealed class RecordPlaces
     public RecordPlaces(Charter charter, RecordLayout layout, RecordKind kind)
     {
         bool decision = kind == RecordKind.Decision;
-        Id = Read("id", charter.RecordId, required: true);
-        Revision = Read("revision", charter.Revision, required: decision);
+        LabelFeed? feed = kind == RecordKind.Label ? charter.LabelFeed : null;
+        Id = feed is null ? Read("id", charter.RecordId, required: true) : Read("labels: join", feed.Join, required: true);
+        Revision = Read("revision", feed is null ? charter.Revision : null, required: decision);
         Time = Read("time", charter.Time?.At, required: decision);
-        Outcome = Read("outcome", charter.Outcome?.At, required: !decision);
+        Outcome = Read("outcome", feed is null ? charter.Outcome?.At : null, required: !decision);
         Decision = Read("decision", decision ? charter.Decision?.At : null, required: true);
         Score = Read("score", decision ? charter.Score?.At : null, required: true);
         Fields = decision
             ? [.. layout.Fields.Select((field, i) => Read($"{(i < layout.Groups ? "groups" : "inputs")}: {field.Name}", field.At, required: true))]
-            : [];
+            : feed is null ? [] : [.. layout.Fields.Select((field, i) => Read($"labels: {field.Name}", i < layout.Groups ? feed.At.GetValueOrDefault(field.Name) : null, required: true))];
         Slices = decision ? [.. charter.Slices.Select(slice => Read($"slices: {slice.Name}", slice.At, required: true))] : [];
         Order = [.. _order];
     }

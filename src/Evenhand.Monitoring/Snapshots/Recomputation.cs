@@ -32,7 +32,7 @@ public static class Recomputation
             throw new FormatException("the snapshot carries no state to derive its readings from");
         }
 
-        Dictionary<string, JsonObject> derived = Derive(new SumLayout(charter), state).ToDictionary(KeyOf, ReadingJson.Of);
+        Dictionary<string, JsonObject> derived = Derive(new SumLayout(charter), state, _ => true).ToDictionary(KeyOf, ReadingJson.Of);
         List<string> differences = [];
         int compared = 0, skipped = 0;
         foreach (JsonObject stated in document["readings"]!.AsArray().Select(r => r!.AsObject()))
@@ -60,11 +60,12 @@ public static class Recomputation
         return new RecomputeReport(compared, skipped, differences);
     }
 
-    /// <summary>Notes the readings that the written state does not give again.</summary>
-    internal static void NoteWhatRestsOnWithheld(SumLayout layout, JsonObject state, IReadOnlyList<Reading> readings)
+    /// <summary>Notes the readings that the written state does not give again; only windows of which something was left out can hold any.</summary>
+    internal static void NoteWhatRestsOnWithheld(SumLayout layout, JsonObject state, IReadOnlySet<string> incomplete, IReadOnlyList<Reading> readings)
     {
-        Dictionary<string, JsonObject> derived = Derive(layout, state).ToDictionary(KeyOf, ReadingJson.Of);
-        foreach (Reading reading in readings)
+        bool isIncomplete(string window) => incomplete.Contains(window) || incomplete.Contains(SnapshotBuilder.BaselineName(window));
+        Dictionary<string, JsonObject> derived = Derive(layout, state, isIncomplete).ToDictionary(KeyOf, ReadingJson.Of);
+        foreach (Reading reading in readings.Where(r => isIncomplete(r.Window)))
         {
             if (!derived.TryGetValue(KeyOf(reading), out JsonObject? again) || Difference(ReadingJson.Of(reading), again) is not null)
             {
@@ -73,12 +74,12 @@ public static class Recomputation
         }
     }
 
-    private static List<Reading> Derive(SumLayout layout, JsonObject state)
+    private static List<Reading> Derive(SumLayout layout, JsonObject state, Func<string, bool> isWanted)
     {
         StateReader reader = new(layout);
         IReadOnlyList<WindowSums> all = reader.Read(state);
         string prefix = SnapshotBuilder.BaselineName("");
-        List<WindowSums> windows = [.. all.Where(w => !w.Window.StartsWith(prefix, StringComparison.Ordinal))];
+        List<WindowSums> windows = [.. all.Where(w => !w.Window.StartsWith(prefix, StringComparison.Ordinal) && isWanted(w.Window))];
         List<Reading> readings = [.. windows.SelectMany(MeasureEngine.Measure)];
         RuleBook.Judge(new RuleContext
         {

@@ -57,7 +57,7 @@ internal static class RulesJson
 
         Number(row, "below", judgement.Below);
         Number(row, "above", judgement.Above);
-        if (judgement.Reading is null || !withheld.IsWithheld(judgement.Reading))
+        if (!IsWithheld(judgement, withheld))
         {
             Number(row, "value", judgement.Value);
             Number(row, "low", judgement.Low);
@@ -67,6 +67,10 @@ internal static class RulesJson
         Text(row, "note", judgement.Note);
         return row;
     }
+
+    private static bool IsWithheld(Judgement judgement, WithheldCells withheld) =>
+        (judgement.Reading is { } now && withheld.IsWithheld(now))
+        || (judgement.Before is { } before && withheld.IsWithheld(before, SnapshotBuilder.BaselineName(before.Window)));
 
     private static string SeverityName(AlertSeverity severity) => severity switch
     {

@@ -22,12 +22,14 @@ public static class SnapshotBuilder
     {
         ArgumentNullException.ThrowIfNull(content);
         TickResult tick = content.Tick;
-        WithheldCells withheld = DisclosurePlanner.Plan(content.Layout, tick.Sums);
-        JsonObject state = new StateWriter(withheld).Write(tick.Sums.Concat(tick.Baselines.Select(Named)));
+        WindowSums[] windows = [.. tick.Sums, .. tick.Baselines.Select(Named)];
+        WithheldCells withheld = DisclosurePlanner.Plan(content.Layout, windows);
+        StateWriter writer = new(withheld);
+        JsonObject state = writer.Write(windows);
         JsonArray rules = RulesJson.Write(tick.Judgements, withheld);
         JsonArray alerts = RulesJson.WriteOpen(content.Layout.Charter, tick, withheld);
         withheld.Apply(tick.Readings);
-        Recomputation.NoteWhatRestsOnWithheld(content.Layout, state, tick.Readings);
+        Recomputation.NoteWhatRestsOnWithheld(content.Layout, state, writer.Incomplete, tick.Readings);
         return new JsonObject
         {
             ["format"] = "evenhand-snapshot/1",
@@ -47,7 +49,8 @@ public static class SnapshotBuilder
             ["fit"] = new JsonObject(),
             ["explanations"] = new JsonArray(),
             ["state"] = state,
-        }.With("outcomes", content.Outcomes is null ? null : Outcomes(content.Outcomes));
+        }.With("outcomes", content.Outcomes is null ? null : Outcomes(content.Outcomes))
+            .With("labels", content.Labels is null ? null : Labels(content.Labels));
     }
 
     /// <summary>The name under which the state carries the sums that a window's rules compare with.</summary>
@@ -120,6 +123,16 @@ public static class SnapshotBuilder
             ["records"] = CanonicalJson.Integer(everyone.Decided + everyone.Other),
         };
     }
+
+    private static JsonObject Labels(LabelsCount count) => new()
+    {
+        ["read"] = CanonicalJson.Integer(count.Read),
+        ["kept"] = CanonicalJson.Integer(count.Kept),
+        ["duplicate"] = CanonicalJson.Integer(count.Duplicate),
+        ["rejected"] = CanonicalJson.Integer(count.Rejected),
+        ["filled"] = CanonicalJson.Integer(count.Filled),
+        ["late"] = CanonicalJson.Integer(count.Late),
+    };
 
     private static JsonObject Outcomes(OutcomesCount count) => new()
     {

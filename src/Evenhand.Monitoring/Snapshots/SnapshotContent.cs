@@ -33,6 +33,9 @@ public sealed record SnapshotContent
     /// <summary>What became of an outcomes file; null without one.</summary>
     public OutcomesCount? Outcomes { get; init; }
 
+    /// <summary>What became of a feed of labels; null without one.</summary>
+    public LabelsCount? Labels { get; init; }
+
     /// <summary>Ids forgotten for want of room: duplicates of these were not recognised.</summary>
     public long EvictedIds { get; init; }
 }

@@ -49,6 +49,11 @@ public sealed class StateReader(SumLayout layout)
                 Cell(sums, shape, cells[LabelOf(cell!["cell"]!)], cell.AsObject());
             }
 
+            if (grouping.AsObject().ContainsKey("known_share"))
+            {
+                Withheld.Add(sums.Window, sums.Slice, name, WithheldCells.WholeGrouping, WithheldPart.KnownShare);
+            }
+
             if (grouping["reference"] is { } reference)
             {
                 sums.StatedReferences[name!] = cells[LabelOf(reference)];

@@ -15,6 +15,12 @@ public sealed class StateWriter(WithheldCells withheld)
     /// <summary>The format's name and version.</summary>
     public const string Format = "evenhand-state/1";
 
+    private readonly HashSet<string> _incomplete = [];
+    private string _window = "";
+
+    /// <summary>The windows of which something was left out, baselines under their own names.</summary>
+    public IReadOnlySet<string> Incomplete => _incomplete;
+
     /// <summary>The state of some windows.</summary>
     public JsonObject Write(IEnumerable<WindowSums> windows) => new()
     {
@@ -24,6 +30,7 @@ public sealed class StateWriter(WithheldCells withheld)
 
     private JsonObject Window(WindowSums sums)
     {
+        _window = sums.Window;
         JsonObject window = new() { ["window"] = sums.Window };
         if (sums.Slice is not null)
         {
@@ -56,6 +63,11 @@ public sealed class StateWriter(WithheldCells withheld)
             {
                 grouping["reference"] = new JsonArray([.. shape.Labels(reference.Index).Select(l => (JsonNode)l)]);
             }
+
+            if (withheld.Contains(sums.Window, sums.Slice, shape.Name, WithheldCells.WholeGrouping, WithheldPart.KnownShare))
+            {
+                grouping["known_share"] = LeaveOut();
+            }
         }
 
         return grouping;
@@ -74,7 +86,7 @@ public sealed class StateWriter(WithheldCells withheld)
         JsonObject written = new() { ["cell"] = new JsonArray([.. shape.Labels(cell).Select(l => (JsonNode)l)]) };
         if (isPlanned || records < withheld.Minimum)
         {
-            written["withheld"] = true;
+            written["withheld"] = LeaveOut(true);
             return written;
         }
 
@@ -91,12 +103,13 @@ public sealed class StateWriter(WithheldCells withheld)
     private void AddOutcomes(JsonObject written, WindowSums sums, GroupingShape shape, int cell)
     {
         CellCounts c = sums.Counts(shape, cell);
-        bool isSplit = IsEnough(c.Positive) && IsEnough(c.Negative) && IsEnough(c.FavourablePositive + c.FavourableNegative);
+        bool isKnown = !withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Outcomes);
+        bool isSplit = isKnown && IsEnough(c.Positive) && IsEnough(c.Negative) && IsEnough(c.FavourablePositive + c.FavourableNegative);
         if (sums.Layout.Charter.Outcome is not null)
         {
             written["outcomes"] = isSplit
                 ? Numbers(c.Positive - c.FavourablePositive, c.Negative - c.FavourableNegative, c.FavourablePositive, c.FavourableNegative)
-                : null;
+                : LeaveOut();
         }
 
         if (shape.ScoresAt < 0)
@@ -108,11 +121,13 @@ public sealed class StateWriter(WithheldCells withheld)
             [.. Enum.GetValues<OutcomeCode>().Select(o => sums.Scores(shape, cell, o))];
         if (!isSplit || scores.Any(s => !IsEnough(s.Count)))
         {
+            LeaveOut();
             scores = [scores.Aggregate((a, b) => (a.Count + b.Count, a.Sum + b.Sum, a.Squares + b.Squares))];
         }
 
-        written["scores"] = scores.Length == 1 && !IsEnough(scores[0].Count)
-            ? null
+        bool isScored = !withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Scores);
+        written["scores"] = !isScored || (scores.Length == 1 && !IsEnough(scores[0].Count))
+            ? LeaveOut()
             : new JsonArray([.. scores.Select(s => (JsonNode)new JsonArray(CanonicalJson.Integer(s.Count), s.Sum.ToString(), s.Squares.ToString()))]);
     }
 
@@ -137,10 +152,17 @@ public sealed class StateWriter(WithheldCells withheld)
         }
     }
 
+    /// <summary>The strata of a cell, or null where one of them would stand for too few records or would give another cell away.</summary>
     private void AddStrata(JsonObject written, WindowSums sums, GroupingShape shape, int cell)
     {
         if (shape.StrataAt < 0)
         {
+            return;
+        }
+
+        if (withheld.Contains(sums.Window, sums.Slice, shape.Name, cell, WithheldPart.Strata))
+        {
+            written["strata"] = LeaveOut();
             return;
         }
 
@@ -150,13 +172,17 @@ public sealed class StateWriter(WithheldCells withheld)
             long unfavourable = sums.InStratum(shape, cell, s, 0), favourable = sums.InStratum(shape, cell, s, 1);
             if (unfavourable + favourable > 0)
             {
-                strata.Add(IsEnough(unfavourable + favourable)
-                    ? Numbers(s, favourable, unfavourable)
-                    : new JsonArray(CanonicalJson.Integer(s), null, null));
+                strata.Add(Numbers(s, favourable, unfavourable));
             }
         }
 
         written["strata"] = strata;
+    }
+
+    private JsonNode? LeaveOut(bool? mark = null)
+    {
+        _incomplete.Add(_window);
+        return mark;
     }
 
     private bool IsEnough(long count) => count == 0 || count >= withheld.Minimum;

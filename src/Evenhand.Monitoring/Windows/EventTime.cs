@@ -2,7 +2,7 @@ using System.Globalization;
 
 namespace Evenhand.Monitoring.Windows;
 
-/// <summary>Event time: microseconds since 1970-01-01T00:00:00Z, years 1 to 9999.</summary>
+/// <summary>Event time: microseconds since 1970-01-01T00:00:00Z, within <see cref="Records.EventTimeRange"/>.</summary>
 public static class EventTime
 {
     /// <summary>Microseconds in a minute.</summary>

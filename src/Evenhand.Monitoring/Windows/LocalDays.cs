@@ -1,10 +1,11 @@
 using NodaTime;
+using NodaTime.TimeZones;
 
 namespace Evenhand.Monitoring.Windows;
 
 /// <summary>The calendar days of a time zone as stretches of event time.</summary>
 /// <remarks>
-/// Days have 23, 24 or 25 hours where clocks change; a day whose midnight does not exist begins at its first instant.
+/// Days have 23, 24 or 25 hours where clocks change; a day whose midnight does not exist begins at its first instant, and one that was left out altogether has no length.
 /// Starts are rounded down to a whole minute, which matters only for zones of long ago with odd seconds. Not thread-safe.
 /// </remarks>
 public sealed class LocalDays
@@ -42,9 +43,10 @@ public sealed class LocalDays
 
     private static Instant InstantOf(long time) => Instant.FromUnixTimeTicks(Math.Max(time, FirstDay) * TimeSpan.TicksPerMicrosecond);
 
+    /// <summary>The start of a day; of the next one that there is where a zone has left the day out, as some did to cross the date line.</summary>
     private long StartOf(LocalDate date)
     {
-        long ticks = _zone.AtStartOfDay(date).ToInstant().ToUnixTimeTicks();
+        long ticks = _zone.ResolveLocal(date.AtMidnight(), Resolvers.CreateMappingResolver(Resolvers.ReturnEarlier, Resolvers.ReturnStartOfIntervalAfter)).ToInstant().ToUnixTimeTicks();
         long minutes = Math.DivRem(ticks, TimeSpan.TicksPerMinute, out long rest);
         return (rest < 0 ? minutes - 1 : minutes) * EventTime.Minute;
     }

@@ -7,14 +7,17 @@ namespace Evenhand.Monitoring.Windows;
 /// <remarks>
 /// <para>The state is a function of the records in order (and of the run log): batch sizes, commits and crashes change no bit.</para>
 /// <para>The way of a record: (1) read and, if need be, rejected; (2) excluded when at or after the as-of; (3) late or ahead of the
-/// shard's clock; (4) a duplicate; (5) its outcome looked up; (6) added to its minute, quarter-hour, day and to all,
+/// shard's clock; (4) a duplicate; (5) its missing labels and (6) its outcome looked up; (7) added to its minute, quarter-hour, day and to all,
 /// for all slices together and for its own. Not thread-safe.</para>
 /// </remarks>
 public sealed class Shard
 {
+    private const int WarmLength = 64;
+
     private readonly SumLayout _layout;
     private readonly ShardOptions _options;
     private readonly OutcomeIndex? _outcomes;
+    private readonly LabelIndex? _labels;
     private readonly Retention _retention;
     private readonly LocalDays _days;
     private readonly BucketTable _buckets;
@@ -37,7 +40,8 @@ public sealed class Shard
     /// <param name="inputs">Number of inputs, at least 1.</param>
     /// <param name="options">How time is judged.</param>
     /// <param name="outcomes">Outcomes that come apart from their records; null where records carry their own.</param>
-    public Shard(SumLayout layout, int inputs, ShardOptions options, OutcomeIndex? outcomes = null)
+    /// <param name="labels">Group labels that come apart from their records; null without a feed.</param>
+    public Shard(SumLayout layout, int inputs, ShardOptions options, OutcomeIndex? outcomes = null, LabelIndex? labels = null)
     {
         ArgumentNullException.ThrowIfNull(layout);
         ArgumentNullException.ThrowIfNull(options);
@@ -45,6 +49,7 @@ public sealed class Shard
         _layout = layout;
         _options = options;
         _outcomes = outcomes;
+        _labels = labels;
         _retention = new Retention(charter.Keep);
         _keptByAll = _retention.ByAllTiers;
         _days = new LocalDays(charter.TimeZone);
@@ -92,6 +97,11 @@ public sealed class Shard
         ArgumentNullException.ThrowIfNull(batch);
         for (int i = 0; i < batch.Count; i++)
         {
+            if (i % WarmLength == 0)
+            {
+                _ids?.Warm(batch.Ids.AsSpan(i, Math.Min(WarmLength, batch.Count - i)));
+            }
+
             _counts.Read++;
             AddEntry(batch, i, input);
             _nextOffsets[input] = batch.Positions[i] + 1;
@@ -248,6 +258,14 @@ public sealed class Shard
     {
         _newest = Math.Max(_newest, time);
         _oldest = Math.Min(_oldest, time);
+        if (_labels is not null)
+        {
+            // 5. Labels that the record lacks.
+            LabelMatch match = _labels.Fill(batch.CaseIds[i], time, _options.AsOf ?? long.MaxValue, batch.CodesOf(i));
+            _counts.LabelsFilled += match == LabelMatch.Filled ? 1 : 0;
+            _counts.LabelsLate += match == LabelMatch.Late ? 1 : 0;
+        }
+
         OutcomeCode outcome = batch.Outcomes[i];
         if (batch.Decisions[i] == DecisionCode.Other)
         {
@@ -257,7 +275,7 @@ public sealed class Shard
         {
             _counts.Used++;
 
-            // 5. The record's own outcome wins over the file's.
+            // 6. The record's own outcome wins over the file's.
             if (_outcomes is not null && outcome == OutcomeCode.Unknown)
             {
                 // One that names its revision counts for that alone, one that names none for every revision.
@@ -265,7 +283,7 @@ public sealed class Shard
             }
         }
 
-        // 6. The sums.
+        // 7. The sums.
         _sums.Set(batch, i, outcome);
         AddTo(time, 0);
         for (int s = 0; s < batch.SliceCount; s++)
@@ -346,6 +364,8 @@ public sealed class Shard
             ByReason = [.. _counts.ByReason],
             OutcomesMatched = _counts.OutcomesMatched,
             OutcomesOutside = _counts.OutcomesOutside,
+            LabelsFilled = _counts.LabelsFilled,
+            LabelsLate = _counts.LabelsLate,
         },
     };
 }

@@ -41,6 +41,12 @@ public sealed class ShardCounts
     /// <summary>Outcomes that came before the decision or later than the charter's <c>within</c> allows.</summary>
     public long OutcomesOutside { get; set; }
 
+    /// <summary>Decisions that took a label from the feed of labels.</summary>
+    public long LabelsFilled { get; set; }
+
+    /// <summary>Decisions whose label came later than the feed's <c>wait</c> allows, or is not known yet at the as-of.</summary>
+    public long LabelsLate { get; set; }
+
     /// <summary>Whether every record read stands in exactly one count.</summary>
     [JsonIgnore]
     public bool AddUp => Read == Used + Other + Rejected + Late + Ahead + Duplicate + Held + Excluded;

@@ -100,7 +100,7 @@ internal static partial class SlowDecoder
             return DecodedRecord.Rejected(RejectReason.MissingTime);
         }
 
-        if (Microseconds(Text(time)!) is not { } moment)
+        if (Microseconds(Text(time)!) is not { } moment || moment < YearOf(1000) || moment >= YearOf(9000))
         {
             return DecodedRecord.Rejected(RejectReason.BadTime);
         }
@@ -182,6 +182,8 @@ internal static partial class SlowDecoder
     private static double? Number(string text) =>
         text.All(c => c is >= '0' and <= '9' or '.' or '-' or '+' or 'e' or 'E')
         && double.TryParse(text, NumberStyles.Float, CultureInfo.InvariantCulture, out double value) && double.IsFinite(value) ? value : null;
+
+    private static long YearOf(int year) => (new DateTime(year, 1, 1) - new DateTime(1970, 1, 1)).Ticks / 10;
 
     private static bool IsNoText(JsonElement? element) => element is { ValueKind: not (JsonValueKind.String or JsonValueKind.Number) };
 

@@ -21,6 +21,7 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
     /// <summary>Opens a store for writing.</summary>
     public static new SqliteStore Open(string file)
     {
+        RefuseForeign(file);
         WriterLock held = WriterLock.Take(file);
         SqliteConnection? connection = null;
         try
@@ -37,6 +38,20 @@ internal sealed class SqliteStore : SqliteEvidence, IStore
             connection?.Dispose();
             held.Dispose();
             throw;
+        }
+    }
+
+    /// <summary>Looks at a file that is there before anything of it is changed or put beside it.</summary>
+    private static void RefuseForeign(string file)
+    {
+        if (System.IO.File.Exists(file) && new FileInfo(file).Length > 0)
+        {
+            SqliteFaults.Run(file, () =>
+            {
+                using SqliteConnection connection = SqliteConnections.Reader(file);
+                SqliteSchema.RefuseNewer(connection, file);
+                return true;
+            });
         }
     }
 
