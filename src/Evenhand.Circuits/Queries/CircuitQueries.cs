@@ -5,7 +5,8 @@ namespace Evenhand.Circuits.Queries;
 /// <summary>Exact answers from a circuit, each composed of the operations beside this type.</summary>
 public static class CircuitQueries
 {
-    internal const string ZeroEvidence = "the evidence has probability zero: no completion of it is possible under the circuit";
+    /// <summary>What is said of evidence that is impossible.</summary>
+    public const string ZeroEvidence = "the evidence has probability zero: no completion of it is possible under the circuit";
 
     /// <summary>The probability of evidence; its density where it holds a known continuous number.</summary>
     public static Scaled Probability(Circuit circuit, Factors evidence)

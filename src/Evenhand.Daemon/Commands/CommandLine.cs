@@ -22,6 +22,7 @@ internal sealed partial class CommandLine(IServiceProvider services)
         root.Subcommands.Add(CheckCommand.Create(services));
         root.Subcommands.Add(ReplayCommand.Create(services));
         root.Subcommands.Add(LearnCommand.Create(services));
+        root.Subcommands.Add(AskCommand.Create(services));
         root.Subcommands.Add(EvidenceCommand.Create(services));
         root.Subcommands.Add(SchemaCommand.Create(services));
         return root;
