@@ -23,7 +23,7 @@ public sealed class ShippedSchemaTests : IDisposable
     [Fact]
     public void Schema_OfEveryFormat_IsPrintedAndTested()
     {
-        string[] tested = ["charter", "encoded-record", "run-log", "shard", "snapshot"];
+        string[] tested = ["charter", "circuit", "encoded-record", "run-log", "shard", "snapshot"];
         Assert.All(tested, format => Assert.Equal("https://json-schema.org/draft/2020-12/schema", (string?)JsonNode.Parse(Text(format))!["$schema"]));
         ProgramRun unknown = ProgramRun.Of("schema", "wages");
         Assert.Equal((2, ""), (unknown.ExitCode, unknown.Out));
@@ -105,6 +105,43 @@ public sealed class ShippedSchemaTests : IDisposable
             entry[key] = JsonNode.Parse(value);
             Assert.True(runLog.Errors(entry).Length > 0, key);
         }
+    }
+
+    [Fact]
+    public void Circuit_AsLearnt_IsValid()
+    {
+        string circuit = _folder.At("circuit.json");
+        ProgramRun run = ProgramRun.Of("learn", _folder.Write("charter.yaml", RichCharter), Decisions(600), "--profiles", "2", "--out", circuit);
+        Assert.True(run.ExitCode == 0, run.Error);
+
+        ShippedSchema schema = new(Text("circuit"));
+        JsonObject document = JsonNode.Parse(File.ReadAllText(circuit))!.AsObject();
+        Assert.Equal("", schema.Errors(document));
+        Assert.NotNull(document["profile_circuit"]);
+        document["nodes"]![0]!["surprise"] = 1;
+        Assert.NotEqual("", schema.Errors(document));
+    }
+
+    /// <summary>Circuits of every kind of node, by hand; and what each kind must not lack.</summary>
+    [Theory]
+    [InlineData("""{"id":0,"variable":"smoker","p":[0.7,0.3]}""", true)]
+    [InlineData("""{"id":0,"variable":"x","mean":0.0,"sd":1.0}""", true)]
+    [InlineData("""{"id":4,"sum":[3,9],"weights":[0.4,0.6]}""", true)]
+    [InlineData("""{"id":3,"product":[0,1]}""", true)]
+    [InlineData("""{"id":3}""", false)]
+    [InlineData("""{"id":3,"product":[0,1],"sum":[2],"weights":[1]}""", false)]
+    [InlineData("""{"id":3,"variable":"x","mean":0.0}""", false)]
+    [InlineData("""{"id":"3","product":[0,1]}""", false)]
+    public void Circuit_WithANodeOfEachKind_IsValidOrNot(string node, bool isValid)
+    {
+        JsonObject circuit = new()
+        {
+            ["format"] = "evenhand-circuit/1",
+            ["variables"] = JsonNode.Parse("""[{"name":"age","kind":"number","edges":[18,30,null]},{"name":"smoker","kind":"category","values":["no","yes"]},{"name":"x","kind":"number"}]"""),
+            ["nodes"] = new JsonArray(JsonNode.Parse(node)),
+            ["root"] = 0,
+        };
+        Assert.Equal(isValid, new ShippedSchema(Text("circuit")).Errors(circuit).Length == 0);
     }
 
     private const string RichCharter = """
