@@ -15,6 +15,34 @@ namespace Evenhand.Daemon.Tests.Schemas;
 /// <summary>What the program writes is as the schemas say that <c>evenhand schema</c> prints.</summary>
 public sealed class ShippedSchemaTests : IDisposable
 {
+    private const string RichCharter = """
+        charter: flood-grants
+        title: Flood-repair grants
+        owner: grants-platform
+        runbook: https://runbook.example/flood
+        labels: { team: quay }
+        id: /case
+        time: /at
+        decision: { at: /decision, favourable: [fast], unfavourable: [slow], other: [withdrawn] }
+        score: { at: /score, range: [0, 1] }
+        outcome: { at: /upheld, positive: [true], negative: [false], within: 30d }
+        slices: [{ name: version, at: /version }]
+        groups:
+          - { name: language, at: /language, values: [river, hill, coast], reference: river, declined: [not_stated] }
+          - { name: age, at: /age, bands: [18, 40, 65, 88] }
+        intersections: [[language, age]]
+        inputs: [{ name: tenure, at: /tenure, values: [owner, tenant] }]
+        windows: [1h, 24h, 10d]
+        adjust: [{ field: tenure, why: rules differ by tenure }]
+        baseline: 5d
+        alerts:
+          - { name: ratio, measure: impact_ratio, grouping: language, window: 10d, below: 0.8, severity: page, labels: { team: harbour } }
+          - { name: strict, measure: selection_rate, window: 10d, above: 1% }
+          - { name: shift, measure: selection_rate_gap, grouping: language, window: 24h, shift: 5pp }
+          - { name: tenure-feed, measure: missing_rate, field: tenure, window: 24h, above: 90%, severity: info }
+          - { name: quiet, no_records_for: 1d }
+        """;
+
     private readonly WorkFolder _folder = new();
 
     public void Dispose() => _folder.Dispose();
@@ -61,6 +89,16 @@ public sealed class ShippedSchemaTests : IDisposable
     [InlineData("credit", "german_credit_decoded.csv")]
     public void Snapshot_OfAnOpenDataSet_IsValid(string charter, string csv) =>
         Assert.Equal("", new ShippedSchema(Text("snapshot")).Errors(OpenData.Replay(charter, csv).Document));
+
+    [Fact]
+    public void Snapshot_WithAFeedOfLabels_IsValid()
+    {
+        string feed = _folder.Write("labels.ndjson", string.Concat(Enumerable.Range(0, 300).Select(i => $$"""{"id":"c{{i}}","tongue":"hill"}""" + "\n")));
+        string charter = RichCharter.Replace("labels: { team: quay }", $"labels: {{ team: quay, file: {feed}, at: {{ language: /tongue }}, join: /id }}", StringComparison.Ordinal);
+        JsonObject document = Replay(charter, Decisions(400), Outcomes(400), "--as-of", "2031-03-20T00:00:00Z");
+        Assert.NotNull(document["labels"]);
+        Assert.Equal("", new ShippedSchema(Text("snapshot")).Errors(document));
+    }
 
     [Fact]
     public void RunLogAndShard_OfARunThatWasStoppedAndWentOn_AreValid()
@@ -143,34 +181,6 @@ public sealed class ShippedSchemaTests : IDisposable
         };
         Assert.Equal(isValid, new ShippedSchema(Text("circuit")).Errors(circuit).Length == 0);
     }
-
-    private const string RichCharter = """
-        charter: flood-grants
-        title: Flood-repair grants
-        owner: grants-platform
-        runbook: https://runbook.example/flood
-        labels: { team: quay }
-        id: /case
-        time: /at
-        decision: { at: /decision, favourable: [fast], unfavourable: [slow], other: [withdrawn] }
-        score: { at: /score, range: [0, 1] }
-        outcome: { at: /upheld, positive: [true], negative: [false], within: 30d }
-        slices: [{ name: version, at: /version }]
-        groups:
-          - { name: language, at: /language, values: [river, hill, coast], reference: river, declined: [not_stated] }
-          - { name: age, at: /age, bands: [18, 40, 65, 88] }
-        intersections: [[language, age]]
-        inputs: [{ name: tenure, at: /tenure, values: [owner, tenant] }]
-        windows: [1h, 24h, 10d]
-        adjust: [{ field: tenure, why: rules differ by tenure }]
-        baseline: 5d
-        alerts:
-          - { name: ratio, measure: impact_ratio, grouping: language, window: 10d, below: 0.8, severity: page, labels: { team: harbour } }
-          - { name: strict, measure: selection_rate, window: 10d, above: 1% }
-          - { name: shift, measure: selection_rate_gap, grouping: language, window: 24h, shift: 5pp }
-          - { name: tenure-feed, measure: missing_rate, field: tenure, window: 24h, above: 90%, severity: info }
-          - { name: quiet, no_records_for: 1d }
-        """;
 
     /// <summary>Times in order over 20 days, of which the last records are left out by the as-of; some of everything.</summary>
     private string Decisions(int count)
