@@ -17,7 +17,7 @@ internal static class SnapshotBenchmark
             File.WriteAllText(charterFile, ReplayBenchmark.CharterText());
             Charter charter = CharterParser.Parse(charterFile, File.ReadAllBytes(charterFile)).Charter!;
             double[] seconds = Median.Seconds(
-                11,
+                41,
                 () => new ReplayRun(charter, new ReplayRequest { Charter = charterFile, Inputs = [file] }, TimeProvider.System, null).RunAlone());
             Console.WriteLine(string.Create(CultureInfo.InvariantCulture, $"{records:N0} records to a snapshot: {seconds[0] * 1e3:0} ms"));
         }
