@@ -34,6 +34,7 @@ internal static class ReplayBenchmark
             }
 
             Allocations(file, charter);
+            AllocationsOfKnownMinutes(file, charter with { RecordId = null });
         }
         finally
         {
@@ -75,6 +76,27 @@ internal static class ReplayBenchmark
 
         double each = (GC.GetAllocatedBytesForCurrentThread() - before) / (double)(read - from);
         Console.WriteLine(string.Create(CultureInfo.InvariantCulture, $"allocated {each:0.0} bytes a record after {from:N0} (buckets and remembered ids; decoding alone allocates none)"));
+    }
+
+    /// <summary>Bytes allocated where neither a new minute nor a new id comes: what a record itself costs.</summary>
+    private static void AllocationsOfKnownMinutes(string file, Charter charter)
+    {
+        SumLayout layout = new(charter);
+        Shard shard = new(layout, 1, new ShardOptions());
+        RecordBatch batch = new(layout.Records, 4096);
+        using RecordFile source = RecordFile.Open(file, charter, layout.Records, new IdHasher(new byte[IdHasher.KeyLength]), RecordKind.Decision);
+        source.Fill(batch);
+        shard.Add(batch, 0);
+        shard.Add(batch, 0);
+        const int rounds = 100;
+        long before = GC.GetAllocatedBytesForCurrentThread();
+        for (int i = 0; i < rounds; i++)
+        {
+            shard.Add(batch, 0);
+        }
+
+        double each = (GC.GetAllocatedBytesForCurrentThread() - before) / (double)(rounds * batch.Count);
+        Console.WriteLine(string.Create(CultureInfo.InvariantCulture, $"allocated {each:0.0} bytes a record where neither a new minute nor a new id comes"));
     }
 
     public static void Write(string file, int records)
