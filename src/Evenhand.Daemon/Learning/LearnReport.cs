@@ -69,7 +69,7 @@ internal sealed class LearnReport
             $"{Sample.Records:N0} records of {Sample.Read:N0} read ({Sample.Rejected:N0} rejected, {Sample.Other:N0} with another decision, {Sample.Unlisted:N0} with an unlisted or declined label)"));
         console.WriteLine(string.Create(
             CultureInfo.InvariantCulture,
-            $"{Circuit.Shape.Fields.Count} fields, {Circuit.Shape.Groups.Count} groups, {Circuit.Shape.Profiles} profiles, learned from {Learned:N0} records"));
+            $"{Counted(Circuit.Shape.Fields.Count, "field")}, {Counted(Circuit.Shape.Groups.Count, "group")}, {Counted(Circuit.Shape.Profiles, "profile")}, learned from {Learned:N0} records"));
         console.WriteLine();
         console.WriteLine("Log-likelihood, nats a record (higher is better)");
         Table likelihood = Plain("records", "", "circuit", "independence", "observed tree");
@@ -121,6 +121,8 @@ internal sealed class LearnReport
             console.Write(table);
         }
     }
+
+    private static string Counted(int count, string what) => string.Create(CultureInfo.InvariantCulture, $"{count:N0} {what}{(count == 1 ? "" : "s")}");
 
     private static Table Plain(params string[] columns) => new Table().Border(TableBorder.Simple).AddColumns(columns);
 
